@@ -6,6 +6,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
 
+from sqlalchemy import Connection
 from sqlmodel import select
 
 from store.errors import NotFound, Refused
@@ -85,6 +86,9 @@ _KNOWN: dict[str, tuple[str, str, Callable[[str], str]]] = {
 }
 
 
+NAMES = tuple(_KNOWN)
+
+
 def settings(record: Record) -> tuple[Setting, ...]:
     """Every setting with its value in force, in a fixed order; what was set under another name follows."""
     with record.read() as conn:
@@ -98,6 +102,12 @@ def value(record: Record, name: str) -> str:
         if setting.name == name:
             return setting.value
     raise NotFound("setting", name, nearest(name, list(_KNOWN)))
+
+
+def kept(conn: Connection, name: str) -> str:
+    """The value in force inside a running transaction."""
+    found = conn.execute(select(SettingRow.value).where(SettingRow.name == name)).scalar()
+    return str(found) if found is not None else _KNOWN[name][1]
 
 
 def checked(name: str, value: str) -> str:

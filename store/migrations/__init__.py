@@ -13,6 +13,9 @@ from pathlib import Path
 from alembic import command
 from alembic.config import Config
 
+from store import catalogue
+from store.changes import Change
+from store.records import SHOP
 from store.sqlite.engine import engine
 
 
@@ -32,6 +35,9 @@ def bring_up(path: Path, version: str | None, at: str) -> None:
             config.attributes["connection"] = conn
             config.attributes["at"] = at
             command.upgrade(config, "head")
+            change = Change(conn, at, SHOP, "catalogue shipped", "")
+            catalogue.ship(change)
+            change.close()
     finally:
         made.dispose()
 

@@ -1,0 +1,181 @@
+"""Judgements: derived from the readings, kept so that screens, reports, plan and review read the same ones.
+
+A judgement is refreshed in the transaction that adds its reading. All of them can be rebuilt from the readings.
+"""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any, Protocol
+
+from sqlalchemy import Connection
+
+from store import gauges, limit_sheets
+from store.catalogue import Catalogue, Characteristic, catalogue
+from store.gauges import Gauge
+from store.limit_sheets import LimitSheet, SheetLimit
+from store.records import Record
+from store.rules import certainty, derived, quantities
+from store.rules.limits import Judgement, Measured, because, from_kept, judge, kept
+from store.rules.readings import Mark, Typed
+
+
+class Judgeable(Protocol):
+    """What of a job decides a judgement."""
+
+    @property
+    def id(self) -> int: ...
+    @property
+    def kind(self) -> str: ...
+    @property
+    def revision_id(self) -> int | None: ...
+
+
+@dataclass(frozen=True, slots=True)
+class Judged:
+    """A judgement with its limit, and the sentence that explains it."""
+
+    characteristic: Characteristic
+    stage: str
+    limit: SheetLimit | None
+    judgement: Judgement
+    because: str
+
+
+_CURRENT = """
+SELECT r.characteristic_id, r.position, r.typed, r.mark, r.value, r.unit, r.places, r.detail, r.gauge_id
+FROM reading r WHERE r.job_id = ? AND r.stage = ? AND r.characteristic_id IN ({})
+AND NOT EXISTS (SELECT 1 FROM reading c WHERE c.corrects_id = r.id) ORDER BY r.id
+"""
+_PUT = """
+INSERT INTO judgement(job_id,stage,characteristic_id,limit_id,verdict,size,kept) VALUES(?,?,?,?,?,?,?)
+ON CONFLICT(job_id,stage,characteristic_id) DO UPDATE SET
+ limit_id=excluded.limit_id, verdict=excluded.verdict, size=excluded.size, kept=excluded.kept
+"""
+_OF_JOB = "SELECT characteristic_id, limit_id, kept FROM judgement WHERE job_id = ? AND stage = ?"
+
+
+def of_job(record: Record, job: Judgeable, stage: str, conn: Connection | None = None) -> tuple[Judged, ...]:
+    """The judgements of a job at a stage, in the order of the catalogue; what has no reading has none."""
+    if conn is None:
+        with record.read() as own:
+            return of_job(record, job, stage, own)
+    known = catalogue(record, conn)
+    sheet = _sheet(record, conn, job)
+    by_key = {limit.id: limit for limit in sheet.limits} if sheet else {}
+    found = {r[0]: r for r in conn.exec_driver_sql(_OF_JOB, (job.id, stage)).all()}
+    made = []
+    for one in known.all:
+        if one.id in found:
+            _, limit_id, text = found[one.id]
+            judgement = from_kept(json.loads(text))
+            limit = by_key.get(limit_id)
+            made.append(Judged(one, stage, limit, judgement, _because(judgement, limit, one)))
+    return tuple(made)
+
+
+def refresh(
+    record: Record, conn: Connection, job: Judgeable, stage: str, names: Iterable[str]
+) -> tuple[Judged, ...]:
+    """Judge these characteristics anew, and those derived from them, inside a write transaction."""
+    known = catalogue(record, conn)
+    sheet = _sheet(record, conn, job)
+    wanted = _with_derived(known, names, job.kind)
+    readings = _measured(record, conn, job.id, stage, known, wanted)
+    return tuple(_put(conn, job.id, one, stage, sheet, readings) for one in wanted if _has_readings(one, readings))
+
+
+def rebuild(record: Record, conn: Connection, job: Judgeable) -> None:
+    """Judge a whole job anew at both stages, inside a write transaction."""
+    conn.exec_driver_sql("DELETE FROM judgement WHERE job_id = ?", (job.id,))
+    for stage in ("as-found", "as-left"):
+        measured = conn.exec_driver_sql(
+            "SELECT DISTINCT characteristic_id FROM reading WHERE job_id = ? AND stage = ?", (job.id, stage)
+        ).scalars()
+        known = catalogue(record, conn)
+        refresh(record, conn, job, stage, [known.by_id[int(i)].name for i in measured])
+
+
+def judged(
+    one: Characteristic, limit: SheetLimit | None, readings: dict[str, list[Measured]]
+) -> Judgement:
+    """The judgement of one characteristic by readings of it (or of what it is derived from), by name."""
+    exact = limit.limit if limit else None
+    if one.derive:
+        return derived.judge(one.derive, {name: readings.get(name, []) for name in one.sources}, exact)
+    return judge(readings.get(one.name, []), one.statistic, exact)
+
+
+def _put(
+    conn: Connection, job_id: int, one: Characteristic, stage: str, sheet: LimitSheet | None,
+    readings: dict[str, list[Measured]],
+) -> Judged:  # fmt: skip
+    limit = sheet.at(one.name, stage) if sheet else None
+    judgement = judged(one, limit, readings)
+    row = stored(job_id, one, stage, limit, judgement)
+    conn.exec_driver_sql(_PUT, row)
+    return Judged(one, stage, limit, judgement, _because(judgement, limit, one))
+
+
+def stored(
+    job_id: int, one: Characteristic, stage: str, limit: SheetLimit | None, judgement: Judgement
+) -> tuple[Any, ...]:
+    """A judgement as the row that keeps it; `size` is in the characteristic's own unit where it converts."""
+    size = None
+    if judgement.value is not None:
+        try:
+            size = float(quantities.convert(judgement.value, judgement.unit, one.unit or judgement.unit))
+        except ValueError:
+            size = float(judgement.value)
+    text = json.dumps(kept(judgement), ensure_ascii=False, separators=(",", ":"))
+    return (job_id, stage, one.id, limit.id if limit else None, judgement.verdict.value, size, text)
+
+
+def _because(judgement: Judgement, limit: SheetLimit | None, one: Characteristic) -> str:
+    return because(judgement, limit.limit if limit else None, one.noun or one.label)
+
+
+def _with_derived(known: Catalogue, names: Iterable[str], kind: str) -> list[Characteristic]:
+    wanted: dict[str, Characteristic] = {}
+    for name in names:
+        wanted[name] = known.by_name[name]
+        for made in known.derived_from.get(name, ()):
+            if kind in made.machines:
+                wanted[made.name] = made
+    return list(wanted.values())
+
+
+def _has_readings(one: Characteristic, readings: dict[str, list[Measured]]) -> bool:
+    if one.derive:
+        return all(readings.get(name) for name in one.sources)
+    return bool(readings.get(one.name))
+
+
+def _sheet(record: Record, conn: Connection, job: Judgeable) -> LimitSheet | None:
+    return None if job.revision_id is None else limit_sheets.by_revision(record, conn, job.revision_id)
+
+
+def _measured(
+    record: Record, conn: Connection, job_id: int, stage: str, known: Catalogue, wanted: Sequence[Characteristic]
+) -> dict[str, list[Measured]]:
+    ids = {known.by_name[name].id for one in wanted for name in (one.sources or (one.name,))}
+    owned = gauges.by_id(record, conn)
+    rows = conn.exec_driver_sql(_CURRENT.format(",".join("?" * len(ids))), (job_id, stage, *ids)).all()
+    made: dict[str, list[Measured]] = {}
+    for r in rows:
+        made.setdefault(known.by_id[r[0]].name, []).append(measured(r, owned))
+    return made
+
+
+def measured(r: Any, owned: dict[int, Gauge]) -> Measured:
+    """A reading's row (position, typed, mark, value, unit, places, detail, gauge_id from its second column) for judging."""
+    value = None if r[4] is None else Fraction(r[4])
+    typed = Typed(r[2], Mark(r[3]), value, r[5], r[6], r[7])
+    gauge = owned.get(r[8]) if r[8] is not None else None
+    variance = expanded = None
+    if gauge is not None and value is not None:
+        variance, expanded = certainty.of_reading(gauge.certainty, typed.unit)
+    return Measured(r[1], typed, variance, expanded)

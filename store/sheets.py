@@ -1,0 +1,104 @@
+"""The sheet of a job: every characteristic in bench order with its limit, readings and verdict at a stage.
+
+The Job screen draws it, the report prints it, `wearline judge` writes it out; nobody judges a second time.
+"""
+
+from __future__ import annotations
+
+from collections import Counter
+from dataclasses import dataclass
+
+from sqlalchemy import Connection
+
+from store import jobs, judgements, limit_sheets, models, readings
+from store.catalogue import Characteristic, catalogue
+from store.jobs import Job
+from store.judgements import Judged
+from store.limit_sheets import SheetLimit
+from store.readings import Reading
+from store.records import Record
+from store.rules.limits import Verdict
+
+Standing = dict[str, int]
+
+
+@dataclass(frozen=True, slots=True)
+class SheetRow:
+    """One characteristic of a job at a stage. `readings` holds the standing reading of each position, None where none.
+
+    `judged` is None until there is a reading; `other` are the readings at the other stage, by position.
+    """
+
+    characteristic: Characteristic
+    limit: SheetLimit | None
+    positions: tuple[str, ...]
+    readings: tuple[Reading | None, ...]
+    judged: Judged | None
+    other: tuple[Reading, ...]
+
+    @property
+    def verdict(self) -> Verdict:
+        """The verdict that stands: what has no reading is not measured, or has no limit."""
+        if self.judged is not None:
+            return self.judged.judgement.verdict
+        return Verdict.not_measured
+
+    @property
+    def is_expected(self) -> bool:
+        """Whether the limit sheet asks for this at this stage, or somebody has measured it."""
+        return self.limit is not None or self.judged is not None
+
+
+@dataclass(frozen=True, slots=True)
+class Sheet:
+    """All rows of a job at one stage, in the order of the bench."""
+
+    job: Job
+    stage: str
+    rows: tuple[SheetRow, ...]
+
+    def row(self, characteristic: str) -> SheetRow:
+        """The row of one characteristic. Raises KeyError."""
+        for row in self.rows:
+            if row.characteristic.name == characteristic:
+                return row
+        raise KeyError(characteristic)
+
+    @property
+    def standing(self) -> Standing:
+        """How many rows have which verdict; rows that nothing asks for are not counted."""
+        found = Counter(row.verdict for row in self.rows if row.is_expected)
+        return {verdict.value: found.get(verdict, 0) for verdict in Verdict}
+
+
+def sheet(record: Record, tag: str, stage: str, conn: Connection | None = None) -> Sheet:
+    """The sheet of a job at a stage. Raises NotFound."""
+    if conn is None:
+        with record.read() as own:
+            return sheet(record, tag, stage, own)
+    job = jobs.find(record, tag, conn)
+    model = models.by_id(conn, job.model_id)
+    limits = None if job.revision_id is None else limit_sheets.by_revision(record, conn, job.revision_id)
+    standing: dict[str, dict[str, Reading]] = {}
+    elsewhere: dict[str, list[Reading]] = {}
+    for reading in readings.of_job_in(record, conn, job.id):
+        if reading.stage == stage:
+            standing.setdefault(reading.characteristic, {})[reading.position] = reading
+        else:
+            elsewhere.setdefault(reading.characteristic, []).append(reading)
+    verdicts = {j.characteristic.name: j for j in judgements.of_job(record, job, stage, conn)}
+    rows = []
+    for one in catalogue(record, conn).of(job.kind):
+        if stage not in one.stages:
+            continue
+        limit = limits.at(one.name, stage) if limits else None
+        taken = standing.get(one.name, {})
+        places = () if one.derive else readings.positions(one, limit, model.bars)
+        places = (*places, *(p for p in taken if p not in places))
+        rows.append(
+            SheetRow(
+                one, limit, places, tuple(taken.get(p) for p in places), verdicts.get(one.name),
+                tuple(elsewhere.get(one.name, ())),
+            )
+        )  # fmt: skip
+    return Sheet(job, stage, tuple(rows))
