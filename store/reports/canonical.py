@@ -20,7 +20,7 @@ from store.reports.contents import STAGES, VERDICTS, Characteristic, Report, Res
 
 
 def to_json(report: Report) -> str:
-    """The canonical text, ending in a newline. Raises Refused for text that is no Unicode, figures that are no numbers."""
+    """The canonical text, ending in a newline. Raises Refused for text that is no Unicode and for NaN or infinity."""
     document = {**judged(report), "report": _out(report)}
     try:
         text = json.dumps(document, ensure_ascii=False, indent=1, allow_nan=False) + "\n"

@@ -138,7 +138,8 @@ class Place:
 class WearRule:
     """The drawn scale of one result. Places run from 0 (left) to 1 (right); a reading may lie off the scale.
 
-    `inside` is the stretch from limit to limit (0 or 1 where a side has none); outside of it is drawn as beyond. `guards` are the stretches where nothing can be told; `faint` the readings of the other stage.
+    `inside` is the stretch from limit to limit (0 or 1 where a side has none); outside of it is drawn as beyond.
+    `guards` are the stretches where nothing can be told; `faint` the readings of the other stage.
     """
 
     inside: tuple[float, float]
