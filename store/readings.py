@@ -108,13 +108,13 @@ def add(
     Raises ReadingRefused and Refused (text, unit, position, stage, job ended, already measured), NotFound.
     """
     entry = Entry(characteristic, text, stage, position, unit, gauge, note, why)
-    _require_known(record)
-    with record.change("reading corrected" if why else "reading added", tag) as change:
-        job = _job(change.conn, tag)
-        change.subject = job.tag
-        reading, one = _insert(record, change, job, entry)
-        moved = judgements.refresh(record, change.conn, job, entry.stage, (one.name,))
-    return Accepted(reading, moved)
+    (accepted,) = add_all(record, tag, (entry,))
+    return accepted
+
+
+def add_all(record: Record, tag: str, entries: Sequence[Entry]) -> tuple[Accepted, ...]:
+    """Add several readings, all or none. Raises like `add`, at the first that is refused."""
+    return tuple(a for a in _add(record, tag, entries, whole=True) if isinstance(a, Accepted))
 
 
 def add_many(record: Record, tag: str, entries: Sequence[Entry]) -> tuple[Accepted | Refused, ...]:
@@ -122,30 +122,38 @@ def add_many(record: Record, tag: str, entries: Sequence[Entry]) -> tuple[Accept
 
     The judgements are refreshed once, after the last; each Accepted carries those of its own characteristic.
     """
+    return _add(record, tag, entries, whole=False)
+
+
+def _add(record: Record, tag: str, entries: Sequence[Entry], *, whole: bool) -> tuple[Accepted | Refused, ...]:
     _require_known(record)
     answers: list[Reading | Refused] = []
-    touched: dict[str, list[str]] = {}
+    touched: dict[str, dict[str, None]] = {}
     moved: dict[tuple[str, str], list[Judged]] = {}
-    with record.change("readings added" if len(entries) > 1 else "reading added", tag) as change:
+    with record.change(_action(entries), tag) as change:
         job = _job(change.conn, tag)
         change.subject = job.tag
         for entry in entries:
             try:
                 reading, one = _insert(record, change, job, entry)
             except Refused as fault:
+                if whole:
+                    raise
                 answers.append(fault)
                 continue
             answers.append(reading)
-            names = touched.setdefault(entry.stage, [])
-            if one.name not in names:
-                names.append(one.name)
+            touched.setdefault(entry.stage, {})[one.name] = None
         for stage, names in touched.items():
             for judged in judgements.refresh(record, change.conn, job, stage, names):
-                for name in (judged.characteristic.sources or (judged.characteristic.name,)):
+                for name in judged.characteristic.sources or (judged.characteristic.name,):
                     moved.setdefault((stage, name), []).append(judged)
     return tuple(
         a if isinstance(a, Refused) else Accepted(a, tuple(moved.get((a.stage, a.characteristic), ()))) for a in answers
     )
+
+
+def _action(entries: Sequence[Entry]) -> str:
+    return f"reading{'s' if len(entries) > 1 else ''} {'corrected' if all(e.why for e in entries) else 'added'}"
 
 
 def of_job(record: Record, tag: str, stage: str | None = None, *, corrected: bool = False) -> tuple[Reading, ...]:
