@@ -1,0 +1,79 @@
+"""How sure a reading is: uncertainty from the gauge, and the probability that what was read conforms.
+
+Sources: JCGM 100:2008 (GUM) for combining, JCGM 106:2012 for the probability of conformity.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import lru_cache
+from math import erfc, sqrt
+
+from store.rules import quantities
+
+
+@dataclass(frozen=True, slots=True)
+class Certainty:
+    """What is known of a gauge, sizes in `unit`; None where nothing is known.
+
+    `expanded` is U, `k` its coverage factor (2 where none is said), `repeatability` a standard deviation.
+    """
+
+    resolution: Fraction | None = None
+    expanded: Fraction | None = None
+    k: Fraction | None = None
+    repeatability: Fraction | None = None
+    unit: str = ""
+
+
+def variance(known: Certainty) -> Fraction | None:
+    """u squared, in the gauge's unit squared: (U/k)^2 + d^2/12 + s^2 (GUM 4.3.7, 5.1.2). None where U is not known."""
+    if known.expanded is None:
+        return None
+    found = (known.expanded / (known.k or Fraction(2))) ** 2
+    if known.resolution is not None:
+        found += known.resolution**2 / 12
+    if known.repeatability is not None:
+        found += known.repeatability**2
+    return found
+
+
+@lru_cache(maxsize=1024)
+def of_reading(known: Certainty, unit: str) -> tuple[Fraction | None, Fraction | None]:
+    """Variance and expanded uncertainty of a reading in `unit` by this gauge; None where it is not known.
+
+    A gauge of another quantity (a caliper for a force, say) tells nothing.
+    """
+    found = variance(known)
+    if found is None or not known.unit or quantities.unit(known.unit).quantity is not quantities.unit(unit).quantity:
+        return None, None
+    by = quantities.scale(known.unit, unit)
+    return found * by**2, (known.expanded or Fraction(0)) * by
+
+
+def combine(variances: Iterable[Fraction | None]) -> Fraction | None:
+    """The variance of a sum or difference of independent readings; None where one of them is not known (GUM 5.1.2)."""
+    total = Fraction(0)
+    for one in variances:
+        if one is None:
+            return None
+        total += one
+    return total
+
+
+def conformance(value: Fraction, low: Fraction | None, high: Fraction | None, variance: Fraction) -> float:
+    """The probability that the size lies within its limits: Phi((high - y)/u) - Phi((low - y)/u) (JCGM 106:2012, 7.3)."""
+    u = sqrt(float(variance))
+    if u == 0.0:
+        inside = (low is None or value >= low) and (high is None or value <= high)
+        return 1.0 if inside else 0.0
+    above = 1.0 if high is None else phi(float(high - value) / u)
+    below = 0.0 if low is None else phi(float(low - value) / u)
+    return max(0.0, above - below)
+
+
+def phi(z: float) -> float:
+    """The standard normal distribution function."""
+    return 0.5 * erfc(-z / sqrt(2.0))
