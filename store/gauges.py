@@ -151,7 +151,9 @@ def insert(
         raise Refused(f"the gauge {name} is there already")
     if unit:
         quantities.unit(unit)
-    made = change.insert(GaugeRow, name=name, kind=kind, unit=unit, resolution=_size(name, "resolution", resolution, unit), note=note)
+    made = change.insert(
+        GaugeRow, name=name, kind=kind, unit=unit, resolution=_size(name, "resolution", resolution, unit), note=note
+    )
     if expanded_uncertainty or k or calibrated or due:
         calibrate_in(change, made, name, unit, expanded_uncertainty, k, calibrated, due)
     return made
@@ -202,7 +204,9 @@ def set_repeatability(record: Record, name: str, repeatability: Fraction, why: s
     """Keep the repeatability (a standard deviation in the gauge's unit) that a gauge study gave. Raises NotFound."""
     gauge = find(record, name)
     with record.change("gauge study", gauge.name) as change:
-        change.update(GaugeRow, gauge.id, repeatability=quantities.plain(repeatability), note=f"{gauge.note} {why}".strip())
+        change.update(
+            GaugeRow, gauge.id, repeatability=quantities.plain(repeatability), note=f"{gauge.note} {why}".strip()
+        )
     return find(record, name)
 
 

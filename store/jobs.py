@@ -331,5 +331,3 @@ def _comeback(outcome: str) -> str:
 
 def _day_end(moment: str) -> str:
     return f"{moment}T23:59:59Z" if len(moment) == 10 else moment
-
-

@@ -77,9 +77,7 @@ def of_job(record: Record, job: Judgeable, stage: str, conn: Connection | None =
     return tuple(made)
 
 
-def refresh(
-    record: Record, conn: Connection, job: Judgeable, stage: str, names: Iterable[str]
-) -> tuple[Judged, ...]:
+def refresh(record: Record, conn: Connection, job: Judgeable, stage: str, names: Iterable[str]) -> tuple[Judged, ...]:
     """Judge these characteristics anew, and those derived from them, inside a write transaction."""
     known = catalogue(record, conn)
     sheet = _sheet(record, conn, job)
@@ -99,9 +97,7 @@ def rebuild(record: Record, conn: Connection, job: Judgeable) -> None:
         refresh(record, conn, job, stage, [known.by_id[int(i)].name for i in measured])
 
 
-def judged(
-    one: Characteristic, limit: SheetLimit | None, readings: dict[str, list[Measured]]
-) -> Judgement:
+def judged(one: Characteristic, limit: SheetLimit | None, readings: dict[str, list[Measured]]) -> Judgement:
     """The judgement of one characteristic by readings of it (or of what it is derived from), by name."""
     exact = limit.limit if limit else None
     if one.derive:

@@ -114,7 +114,9 @@ def sheet(record: Record, model: str, revision: int | None = None) -> LimitSheet
             return None
         wanted = known[-1] if revision is None else next((r for r in known if r.number == revision), None)
         if wanted is None:
-            raise NotFound(f"revision of the sheet of {found.number}", str(revision), [str(r.number) for r in known[-3:]])
+            raise NotFound(
+                f"revision of the sheet of {found.number}", str(revision), [str(r.number) for r in known[-3:]]
+            )
         return by_revision(record, conn, wanted.id)
 
 

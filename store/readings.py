@@ -262,7 +262,9 @@ def place_of(
         else:
             free = [p for p in listed if p not in taken]
             if not free:
-                raise Refused(f"{one.name} has all its {len(listed)} readings; correct one: --at POSITION --correct WHY")
+                raise Refused(
+                    f"{one.name} has all its {len(listed)} readings; correct one: --at POSITION --correct WHY"
+                )
             place = free[0]
     elif place not in listed and place not in taken:
         place = _beyond(job, one, listed, place)

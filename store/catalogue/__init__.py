@@ -196,4 +196,3 @@ def save_line(row: dict[str, object]) -> dict[str, str]:
     line = {column: "" if (v := row.get(column)) is None else str(v) for column in COLUMNS}
     line["characteristic"], line["name"] = str(row["name"]), str(row["label"])
     return line
-

@@ -60,7 +60,9 @@ def kind_of(path: Path) -> Kind:
         return found[0]
     if found:
         names = " and ".join(kind.name for kind in found)
-        raise FileRefused([BadLine(path.name, 1, "", f"the columns fit {names} alike; add a column that tells them apart")])
+        raise FileRefused(
+            [BadLine(path.name, 1, "", f"the columns fit {names} alike; add a column that tells them apart")]
+        )
     raise FileRefused(_misfit(path, columns))
 
 
@@ -73,7 +75,9 @@ def _misfit(path: Path, columns: tuple[str, ...]) -> list[BadLine]:
 
     best = max(kinds(), key=fit)
     if not set(columns) & set(best.columns):
-        return [BadLine(path.name, 1, "", f"no kind of file has these columns; kinds: {', '.join(k.name for k in kinds())}")]
+        return [
+            BadLine(path.name, 1, "", f"no kind of file has these columns; kinds: {', '.join(k.name for k in kinds())}")
+        ]
     bad = []
     for column in columns:
         if column not in best.columns:

@@ -62,15 +62,21 @@ def _take(loading: Loading, lines: Iterator[Numbered]) -> int:
             continue
         cell = (*which, entry.characteristic, entry.stage)
         if cell in seen:
-            loading.refuse(number, "characteristic", f"{entry.characteristic} {entry.stage} stands in line {seen[cell]} already")
+            loading.refuse(
+                number, "characteristic", f"{entry.characteristic} {entry.stage} stands in line {seen[cell]} already"
+            )
             continue
         seen[cell] = number
         decision = line.get("decision", "")
         if decision and decision not in _DECISIONS:
-            loading.refuse(number, "decision", f"{brief(decision)!r} is no decision rule; one of {', '.join(sorted(_DECISIONS))}")
+            loading.refuse(
+                number, "decision", f"{brief(decision)!r} is no decision rule; one of {', '.join(sorted(_DECISIONS))}"
+            )
             continue
         if decision and decisions.setdefault(which, decision) != decision:
-            loading.refuse(number, "decision", f"the sheet has {decisions[which]} in an earlier line; a sheet has one rule")
+            loading.refuse(
+                number, "decision", f"the sheet has {decisions[which]} in an earlier line; a sheet has one rule"
+            )
             continue
         sheets.setdefault(which, []).append(entry)
         taken += 1

@@ -80,7 +80,11 @@ def _clearance(bores: Sequence[_Sized], journals: Sequence[_Sized], unit: str, l
     loose = _difference(max(bores, key=_value), min(journals, key=_value))
     tight = _difference(min(bores, key=_value), max(journals, key=_value))
     governing = loose
-    if limit is not None and limit.low is not None and (limit.high is None or tight[0] - limit.low < limit.high - loose[0]):
+    if (
+        limit is not None
+        and limit.low is not None
+        and (limit.high is None or tight[0] - limit.low < limit.high - loose[0])
+    ):
         governing = tight
     value, at, variance, places = governing
     return limits.decide(value, unit, _single(limit), variance, Statistic.each, at=at, count=1, places=places)

@@ -122,7 +122,15 @@ def judge(measured: Sequence[Measured], statistic: Statistic, limit: Limit | Non
         detail = "; ".join(m.typed.detail for m in measured if m.typed.detail)
         verdict = Verdict.not_measured if limit else Verdict.no_limit
         reason = "skipped" if measured else "none"
-        return Judgement(verdict, statistic, count=0, expected=expected, unit=limit.unit if limit else "", reason=reason, detail=detail)
+        return Judgement(
+            verdict,
+            statistic,
+            count=0,
+            expected=expected,
+            unit=limit.unit if limit else "",
+            reason=reason,
+            detail=detail,
+        )
     unit = limit.unit if limit and statistic is not Statistic.deviation else numbers[0].typed.unit
     sized = [_sized(m, unit) for m in numbers]
     value, at, variance = _governing(sized, statistic, limit)
@@ -355,7 +363,9 @@ def kept(judged: Judgement) -> list[Any]:
 
 def from_kept(values: Sequence[Any]) -> Judgement:
     """The judgement that `kept` took apart. Raises ValueError for anything else."""
-    verdict, statistic, value, unit, at, count, expected, variance, rule, probability, wear, places, reason, detail = values
+    verdict, statistic, value, unit, at, count, expected, variance, rule, probability, wear, places, reason, detail = (
+        values
+    )
     return Judgement(
         Verdict(verdict), Statistic(statistic), None if value is None else Fraction(value), unit, at, count, expected,
         None if variance is None else Fraction(variance), Rule(rule), probability, wear, places, reason, detail,

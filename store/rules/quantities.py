@@ -121,7 +121,9 @@ def unit(symbol: str) -> Unit:
         found = _BY_SYMBOL.get(name) if name else None
     if found is None:
         near = _nearest(typed)
-        raise Refused(f"{brief(typed, 20)!r} is no unit that is known here" + (f"; did you mean {near}?" if near else ""))
+        raise Refused(
+            f"{brief(typed, 20)!r} is no unit that is known here" + (f"; did you mean {near}?" if near else "")
+        )
     return found
 
 

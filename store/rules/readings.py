@@ -94,7 +94,9 @@ def parse(text: str, quantity: Quantity, unit: str) -> Typed:
 def _attribute(text: str) -> Typed:
     found = _ATTRIBUTE.match(text)
     if found is None:
-        raise ReadingRefused(f"{brief(text, 40)!r} is neither pass nor fail; write pass, fail or cannot judge, detail after it")
+        raise ReadingRefused(
+            f"{brief(text, 40)!r} is neither pass nor fail; write pass, fail or cannot judge, detail after it"
+        )
     first = found["mark"].casefold()
     mark = Mark.passed if first in {"pass", "p", "ok"} else Mark.failed if first in {"fail", "f"} else Mark.cannot_judge
     return Typed(text, mark, None, "", 0, " ".join(found["detail"].split()))
@@ -160,7 +162,10 @@ def _units(quantity: Quantity) -> str:
 
 
 _FACTORS = {
-    Quantity.length: ((Fraction("25.4"), "inches typed as millimetres"), (1 / Fraction("25.4"), "millimetres typed as inches")),
+    Quantity.length: (
+        (Fraction("25.4"), "inches typed as millimetres"),
+        (1 / Fraction("25.4"), "millimetres typed as inches"),
+    ),
     Quantity.force: (
         (Fraction("0.2780138509537812"), "ounces typed as newtons"),
         (1 / Fraction("0.2780138509537812"), "newtons typed as ounces"),

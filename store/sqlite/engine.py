@@ -29,7 +29,9 @@ def connect(path: Path, *, read_only: bool = False) -> sqlite3.Connection:
     Raises sqlite3.Error.
     """
     if read_only:
-        raw = sqlite3.connect(f"{path.absolute().as_uri()}?mode=ro", uri=True, timeout=BUSY_SECONDS, isolation_level=None)
+        raw = sqlite3.connect(
+            f"{path.absolute().as_uri()}?mode=ro", uri=True, timeout=BUSY_SECONDS, isolation_level=None
+        )
     else:
         raw = sqlite3.connect(path, timeout=BUSY_SECONDS, isolation_level=None, check_same_thread=False)
         raw.execute("PRAGMA journal_mode=WAL")

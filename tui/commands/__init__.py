@@ -58,7 +58,9 @@ class Commands(click.Group):
     context_settings={"help_option_names": ["--help"], "max_content_width": 100},
     epilog="Example: wearline demo    (a record of an invented shop, to look around in)",
 )
-@click.option("--record", "record", metavar="FILE", envvar="WEARLINE_RECORD", help="The record; default: your own data folder.")
+@click.option(
+    "--record", "record", metavar="FILE", envvar="WEARLINE_RECORD", help="The record; default: your own data folder."
+)
 @click.option("--as", "acting", metavar="INITIALS", envvar="WEARLINE_AS", help="Who acts.")
 @click.option("--debug", is_flag=True, help="Show where in the program a fault arose.")
 @click.version_option(None, "--version", package_name="wearline", prog_name="wearline")
@@ -109,5 +111,8 @@ def _say(fault: Exception) -> int:
         click.echo("wearline: this machine has no memory left for it; nothing was written", err=True)
     else:
         what = " ".join(str(fault).split())[:200]
-        click.echo(f"wearline: a fault in the program, not in what you did ({type(fault).__name__}: {what}); --debug shows it", err=True)
+        click.echo(
+            f"wearline: a fault in the program, not in what you did ({type(fault).__name__}: {what}); --debug shows it",
+            err=True,
+        )
     return 1

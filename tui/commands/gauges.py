@@ -82,7 +82,12 @@ def recall(record: Record, gauge: str, as_json: bool) -> None:
 
     found = store_gauges.recall(record, gauge)
     if as_json:
-        write_json([{"tag": t.tag, "outcome": t.outcome, "readings": t.readings, "first": t.first, "last": t.last} for t in found])
+        write_json(
+            [
+                {"tag": t.tag, "outcome": t.outcome, "readings": t.readings, "first": t.first, "last": t.last}
+                for t in found
+            ]
+        )
         return
     write_table(
         ("tag", "stands", "readings", "first", "last"),

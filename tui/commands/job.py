@@ -56,11 +56,34 @@ def list_(record: Record, everything: bool, model: str | None, search: str, most
 
     lines = jobs.listing(record, outcome=None if everything else "open", model=model, search=search, most=most)
     if as_json:
-        fields = ("tag", "model", "serial", "customer", "complaint", "taken_in", "ended", "stands", "out", "in_doubt", "earlier", "next")
+        fields = (
+            "tag",
+            "model",
+            "serial",
+            "customer",
+            "complaint",
+            "taken_in",
+            "ended",
+            "stands",
+            "out",
+            "in_doubt",
+            "earlier",
+            "next",
+        )
         write_json([{name: getattr(line, name) for name in fields} for line in lines])
         return
     rows = [
-        (x.tag, x.model, x.serial, x.customer[:24], times.local(x.taken_in), x.stands, x.out or "", x.in_doubt or "", x.next)
+        (
+            x.tag,
+            x.model,
+            x.serial,
+            x.customer[:24],
+            times.local(x.taken_in),
+            x.stands,
+            x.out or "",
+            x.in_doubt or "",
+            x.next,
+        )
         for x in lines
     ]
     write_table(

@@ -29,7 +29,9 @@ def judge(record: Record, tag: str, stage: str | None, as_json: bool) -> None:
         return
     for sheet in found:
         standing = ", ".join(f"{count} {verdict}" for verdict, count in sheet.standing.items() if count)
-        click.echo(f"{sheet.job.tag} {sheet.job.model}, {sheet.stage.replace('-', ' ')}: {standing or 'nothing measured'}")
+        click.echo(
+            f"{sheet.job.tag} {sheet.job.model}, {sheet.stage.replace('-', ' ')}: {standing or 'nothing measured'}"
+        )
         write_table(
             ("characteristic", "verdict", "because", "source"),
             [

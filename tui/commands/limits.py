@@ -47,10 +47,15 @@ def show(record: Record, model: str, revision: int | None, as_json: bool) -> Non
         )  # fmt: skip
         return
     rev = sheet.revision
-    click.echo(f"{sheet.model}, revision {rev.number} of {len(known)}, {rev.decision.value}, {times.local(rev.at)} by {rev.by}")
+    click.echo(
+        f"{sheet.model}, revision {rev.number} of {len(known)}, {rev.decision.value}, {times.local(rev.at)} by {rev.by}"
+    )
     write_table(
         ("characteristic", "stage", "new", "low", "high", "unit", "equal", "count", "source"),
-        [(x.characteristic, x.stage, x.new, x.low, x.high, x.unit, x.at_limit, x.count, x.source) for x in sheet.limits],
+        [
+            (x.characteristic, x.stage, x.new, x.low, x.high, x.unit, x.at_limit, x.count, x.source)
+            for x in sheet.limits
+        ],
     )
 
 

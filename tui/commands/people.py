@@ -38,7 +38,9 @@ def list_(record: Record, as_json: bool) -> None:
 @people.command(epilog="Example: wearline people add JD 'Jo Dunmore' --may bench --may inspect")
 @click.argument("initials")
 @click.argument("name")
-@click.option("--may", multiple=True, default=("bench",), show_default=True, help="bench, inspect or own; may be given again.")
+@click.option(
+    "--may", multiple=True, default=("bench",), show_default=True, help="bench, inspect or own; may be given again."
+)
 @on_record
 def add(record: Record, initials: str, name: str, may: tuple[str, ...]) -> None:
     """Enter a person; from the first one on, a change says who made it."""

@@ -22,7 +22,9 @@ if TYPE_CHECKING:
 @click.option("--gauge", help="The gauge it was read with.")
 @click.option("--unit", help="The unit where none is typed; default: the gauge's, else the sheet's.")
 @click.option("--note", default="")
-@click.option("--correct", "why", metavar="WHY", default="", help="Correct the reading that stands there, for this reason.")
+@click.option(
+    "--correct", "why", metavar="WHY", default="", help="Correct the reading that stands there, for this reason."
+)
 @as_json
 @on_record
 def read(

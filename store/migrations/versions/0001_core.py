@@ -72,7 +72,7 @@ TABLES = (
     CONSTRAINT kind_is_known CHECK (kind IN ('starter','generator','alternator')),
     UNIQUE (number)
 )""",
-    "CREATE INDEX ix_model_key ON model ("key")",
+    'CREATE INDEX ix_model_key ON model ("key")',
     """CREATE TABLE person (
     id INTEGER NOT NULL,
     initials VARCHAR NOT NULL,
@@ -125,7 +125,7 @@ TABLES = (
     CONSTRAINT one_unit_a_serial UNIQUE (model_id, "key"),
     FOREIGN KEY(model_id) REFERENCES model (id)
 )""",
-    "CREATE INDEX ix_unit_key ON unit ("key")",
+    'CREATE INDEX ix_unit_key ON unit ("key")',
     """CREATE TABLE job (
     id INTEGER NOT NULL,
     tag VARCHAR NOT NULL,
@@ -155,7 +155,7 @@ TABLES = (
     FOREIGN KEY(earlier_id) REFERENCES job (id)
 )""",
     "CREATE INDEX ix_job_earlier_id ON job (earlier_id)",
-    "CREATE INDEX ix_job_key ON job ("key")",
+    'CREATE INDEX ix_job_key ON job ("key")',
     "CREATE INDEX ix_job_outcome ON job (outcome)",
     "CREATE INDEX ix_job_taken_in ON job (taken_in)",
     "CREATE INDEX ix_job_unit_id ON job (unit_id)",

@@ -1,0 +1,84 @@
+"""The report as PDF/A-3b with its contents attached as JSON.
+
+The same contents give the same bytes: fonts come from this package alone, the date from the contents, nothing from the
+machine or the clock. One compiler is kept for all reports of a process, so that a batch pays for it once.
+"""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Callable
+from functools import lru_cache
+from pathlib import Path
+from threading import Lock
+from typing import TYPE_CHECKING
+
+from store.errors import Refused, brief
+from store.reports import characters, drawing
+from store.reports.canonical import to_json
+from store.reports.contents import LAYOUT, Report
+from store.reports.figures import instant
+
+if TYPE_CHECKING:
+    import typst
+
+STANDARD = "a-3b"
+ATTACHMENT = "wearline-report.json"
+_HERE = Path(__file__).parent
+_ONE_AT_A_TIME = Lock()
+
+
+def draw(report: Report, contents: str | None = None) -> bytes:
+    """The report as PDF bytes. `contents` is the frozen JSON text that is attached; None: made from `report`.
+
+    Raises Refused where the contents cannot be drawn (an unknown layout, a date that is none).
+    """
+    if report.layout != LAYOUT:
+        raise Refused(f"this report is of layout {report.layout}, which this version does not draw")
+    try:
+        issued = instant(report.issued)
+    except ValueError:
+        raise Refused(f"{brief(report.issued, 30)!r} is no moment at which a report can be issued") from None
+    attached = to_json(report) if contents is None else contents
+    stamp = int(issued.timestamp())
+    try:
+        return _compiled(report, attached, stamp, characters.in_print)
+    except _NoGlyph:
+        # Shaping joins characters in more ways than a list of code points can foretell; named ones always print.
+        return _compiled(report, attached, stamp, lambda text: characters.strictly(characters.in_print(text)))
+
+
+class _NoGlyph(Exception):
+    """A character, as shaped, has no glyph in any bundled font."""
+
+
+def _compiled(report: Report, contents: str, stamp: int, seen: Callable[[str], str]) -> bytes:
+    import typst
+
+    inputs = {
+        "drawing": json.dumps(drawing.of(report, seen), ensure_ascii=False),
+        "contents": contents,
+    }
+    with _ONE_AT_A_TIME:
+        try:
+            made, warnings = _compiler().compile_with_warnings(
+                format="pdf", sys_inputs=inputs, pdf_standards=[STANDARD], timestamp=stamp, pdf_tags=False
+            )
+        except typst.TypstError as fault:
+            if "could not be displayed" in fault.message:
+                raise _NoGlyph from None
+            raise Refused(f"the report cannot be drawn: {brief(fault.message, 200)}") from fault
+    if warnings:
+        raise Refused(f"the report cannot be drawn as it should: {brief(warnings[0].message, 200)}")
+    if not isinstance(made, bytes):
+        raise Refused("the report cannot be drawn: nothing came out")
+    return made
+
+
+@lru_cache(maxsize=1)
+def _compiler() -> typst.Compiler:
+    import typst
+
+    fonts = typst.Fonts(include_system_fonts=False, include_embedded_fonts=False, font_paths=[_HERE / "fonts"])
+    templates = _HERE / "templates"
+    return typst.Compiler(templates / "report.typ", root=templates, font_paths=fonts, ignore_system_fonts=True)
