@@ -17,6 +17,8 @@ from typing import Any
 
 from sqlalchemy import Connection
 
+from store.sqlite.engine import driver, rows
+
 GENESIS = "0" * 64
 RUN = 1000
 Row = tuple[Any, ...]
@@ -56,28 +58,28 @@ def digest(rows: Sequence[Sequence[Any]]) -> str:
 
 def entry_hash(previous: str, at: str, by: str, action: str, subject: str, changes: str) -> str:
     """The hash of an entry: over the hash before it and everything that it says."""
-    return hashlib.sha256(_encode([previous, at, by, action, subject, changes]).encode()).hexdigest()
+    said = f"{_encode([previous, at, by, action, subject])}\n{changes}"
+    return hashlib.sha256(said.encode()).hexdigest()
 
 
 def append(conn: Connection, at: str, by: str, action: str, subject: str, changes: list[dict[str, Any]]) -> str:
     """Append one entry inside the running write transaction; returns its hash, the new head."""
-    last = conn.exec_driver_sql(_LAST).scalar()
-    previous = str(last) if last else GENESIS
+    previous = head(conn)
     text = _encode(changes)
     own = entry_hash(previous, at, by, action, subject, text)
-    conn.exec_driver_sql(_ADD, (at, by, action, subject, text, previous, own))
+    driver(conn).execute(_ADD, (at, by, action, subject, text, previous, own))
     return own
 
 
 def head(conn: Connection) -> str:
     """The hash of the newest entry; GENESIS for an empty chain."""
-    last = conn.exec_driver_sql(_LAST).scalar()
-    return str(last) if last else GENESIS
+    last = driver(conn).execute(_LAST).fetchone()
+    return str(last[0]) if last else GENESIS
 
 
 def entries(conn: Connection, subject: str | None = None, most: int = 200) -> tuple[Entry, ...]:
     """The newest entries first, of one subject (a tag, say) or of the whole record."""
     where, values = ("WHERE subject = ?", (subject,)) if subject is not None else ("", ())
     sql = f"SELECT id,at,by,action,subject,changes,hash FROM audit {where} ORDER BY id DESC LIMIT ?"  # noqa: S608
-    found = conn.exec_driver_sql(sql, (*values, most)).all()
+    found = rows(conn, sql, (*values, most))
     return tuple(Entry(r[0], r[1], r[2], r[3], r[4], json.loads(r[5]), r[6]) for r in found)

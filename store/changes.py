@@ -32,6 +32,12 @@ def columns(table: Table) -> tuple[str, ...]:
 
 
 @lru_cache(maxsize=64)
+def places(table: Table) -> dict[str, int]:
+    """Where in a row each column stands."""
+    return {column: place for place, column in enumerate(columns(table))}
+
+
+@lru_cache(maxsize=64)
 def name(table: Table) -> str:
     """The table's name in the database."""
     return str(table.__table__.name)  # type: ignore[attr-defined]
@@ -66,27 +72,26 @@ class Change:
 
     def __init__(self, conn: Connection, at: str, by: str, action: str, subject: str) -> None:
         self.conn, self.at, self.by, self.action, self.subject = conn, at, by, action, subject
+        self.raw = driver(conn)
         self.made: list[dict[str, Any]] = []
 
     def row(self, table: Table, values: dict[str, Any]) -> list[Any]:
         """A whole row in column order, defaults filled in. Raises KeyError for a column that the table lacks."""
         made = list(_defaults(table))
-        names = columns(table)
+        place = places(table)
         for column, value in values.items():
-            if column not in names:
-                raise KeyError(column)
-            made[names.index(column)] = _plain(value)
+            made[place[column]] = int(value) if value is True or value is False else value
         return made
 
     def insert(self, table: Table, **values: Any) -> int:
         """Insert one row; returns its whole-number key (0 for a table whose key is text)."""
         row = self.row(table, values)
-        cursor = self.conn.exec_driver_sql(insertion(table), tuple(row))
+        cursor = self.raw.execute(insertion(table), row)
         key_name = key(table)
         made = 0
         if key_name == "id":
-            made = int(cursor.lastrowid)
-            row[columns(table).index("id")] = made
+            made = int(cursor.lastrowid or 0)
+            row[places(table)["id"]] = made
         self.made.append({"table": name(table), "before": None, "after": row})
         return made
 
@@ -103,7 +108,7 @@ class Change:
             return False
         sets = ",".join(f"{column}=?" for column in values)
         sql = f"UPDATE {name(table)} SET {sets} WHERE {key(table)}=?"  # noqa: S608
-        self.conn.exec_driver_sql(sql, (*(_plain(v) for v in values.values()), which))
+        self.raw.execute(sql, (*(_plain(v) for v in values.values()), which))
         self.made.append({"table": name(table), "before": before, "after": after})
         return True
 
@@ -112,7 +117,7 @@ class Change:
         before = self._present(table, which)
         if before is None:
             return False
-        self.conn.exec_driver_sql(f"DELETE FROM {name(table)} WHERE {key(table)}=?", (which,))  # noqa: S608
+        self.raw.execute(f"DELETE FROM {name(table)} WHERE {key(table)}=?", (which,))  # noqa: S608
         self.made.append({"table": name(table), "before": before, "after": None})
         return True
 
@@ -121,7 +126,7 @@ class Change:
 
         Rows are kept under digests of runs of audit.RUN rows in the order of their ids. Returns how many were written.
         """
-        raw = driver(self.conn)
+        raw = self.raw
         sql, where = insertion(table), name(table)
         first = int(raw.execute(f"SELECT coalesce(max(id),0)+1 FROM {where}").fetchone()[0])  # noqa: S608
         total, runs, next_id = 0, [], first
@@ -137,7 +142,7 @@ class Change:
 
     def _present(self, table: Table, which: int | str) -> list[Any] | None:
         sql = f"SELECT {','.join(columns(table))} FROM {name(table)} WHERE {key(table)}=?"  # noqa: S608
-        found = self.conn.exec_driver_sql(sql, (which,)).first()
+        found = self.raw.execute(sql, (which,)).fetchone()
         return None if found is None else list(found)
 
     def close(self) -> None:

@@ -47,6 +47,7 @@ class Gauge:
     note: str
     retired: bool
     calibrations: tuple[Calibration, ...]
+    certainty: Certainty
 
     @property
     def calibration(self) -> Calibration | None:
@@ -62,18 +63,6 @@ class Gauge:
         """Whether calibration was due before the day of `at`."""
         return self.due is not None and self.due < at[:10]
 
-    @property
-    def certainty(self) -> Certainty:
-        """What is known of how sure its readings are, for store.rules.certainty."""
-        last = self.calibration
-        return Certainty(
-            resolution=_number(self.resolution),
-            expanded=_number(last.expanded_uncertainty if last else None),
-            k=_number(last.k if last else None),
-            repeatability=_number(self.repeatability),
-            unit=self.unit,
-        )
-
 
 @dataclass(frozen=True, slots=True)
 class Touched:
@@ -84,6 +73,12 @@ class Touched:
     readings: int
     first: str
     last: str
+
+
+_STAMP = (
+    "SELECT (SELECT max(id) FROM calibration), (SELECT count(*) FROM gauge), "
+    "(SELECT total(length(coalesce(repeatability,'')) + retired * 1000 + id) FROM gauge)"
+)
 
 
 def listing(record: Record, *, retired: bool = False) -> tuple[Gauge, ...]:
@@ -111,16 +106,7 @@ def _all(record: Record, conn: Connection | None = None) -> dict[str, Gauge]:
     if conn is None:
         with record.read() as own:
             return _all(record, own)
-    stamp = conn.exec_driver_sql(
-        "SELECT (SELECT max(id) FROM calibration), (SELECT count(*) FROM gauge), "
-        "(SELECT total(length(coalesce(repeatability,'')) + retired * 1000 + id) FROM gauge)"
-    ).one()
-    kept = record.cache.get("gauges")
-    if kept is None or kept[0] != tuple(stamp):
-        kept = (tuple(stamp), _read(conn))
-        record.cache["gauges"] = kept
-    found: dict[str, Gauge] = kept[1]
-    return found
+    return record.kept(conn, "gauges", _STAMP, _read)
 
 
 def _read(conn: Connection) -> dict[str, Gauge]:
@@ -134,7 +120,15 @@ def _read(conn: Connection) -> dict[str, Gauge]:
 
 
 def _gauge(r: Any, calibrations: tuple[Calibration, ...]) -> Gauge:
-    return Gauge(r.id, r.name, r.kind, r.unit, r.resolution, r.repeatability, r.note, bool(r.retired), calibrations)
+    last = calibrations[-1] if calibrations else None
+    sure = Certainty(
+        resolution=_number(r.resolution),
+        expanded=_number(last.expanded_uncertainty if last else None),
+        k=_number(last.k if last else None),
+        repeatability=_number(r.repeatability),
+        unit=r.unit,
+    )
+    return Gauge(r.id, r.name, r.kind, r.unit, r.resolution, r.repeatability, r.note, bool(r.retired), calibrations, sure)
 
 
 def insert(

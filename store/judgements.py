@@ -13,7 +13,7 @@ from typing import Any, Protocol
 
 from sqlalchemy import Connection
 
-from store import gauges, limit_sheets
+from store import audit, gauges, limit_sheets
 from store.catalogue import Catalogue, Characteristic, catalogue
 from store.gauges import Gauge
 from store.limit_sheets import LimitSheet, SheetLimit
@@ -21,6 +21,9 @@ from store.records import Record
 from store.rules import certainty, derived, quantities
 from store.rules.limits import Judgement, Measured, because, from_kept, judge, kept
 from store.rules.readings import Mark, Typed
+from store.sqlite.engine import driver, rows
+
+Sure = dict[tuple[int, str], tuple[Fraction | None, Fraction | None]]
 
 
 class Judgeable(Protocol):
@@ -36,13 +39,18 @@ class Judgeable(Protocol):
 
 @dataclass(frozen=True, slots=True)
 class Judged:
-    """A judgement with its limit, and the sentence that explains it."""
+    """A judgement with its limit."""
 
     characteristic: Characteristic
     stage: str
     limit: SheetLimit | None
     judgement: Judgement
-    because: str
+
+    @property
+    def because(self) -> str:
+        """The sentence that explains the verdict."""
+        exact = self.limit.limit if self.limit else None
+        return because(self.judgement, exact, self.characteristic.noun or self.characteristic.label)
 
 
 _CURRENT = """
@@ -66,14 +74,14 @@ def of_job(record: Record, job: Judgeable, stage: str, conn: Connection | None =
     known = catalogue(record, conn)
     sheet = _sheet(record, conn, job)
     by_key = {limit.id: limit for limit in sheet.limits} if sheet else {}
-    found = {r[0]: r for r in conn.exec_driver_sql(_OF_JOB, (job.id, stage)).all()}
+    found = {r[0]: r for r in rows(conn, _OF_JOB, (job.id, stage))}
     made = []
     for one in known.all:
         if one.id in found:
             _, limit_id, text = found[one.id]
             judgement = from_kept(json.loads(text))
             limit = by_key.get(limit_id)
-            made.append(Judged(one, stage, limit, judgement, _because(judgement, limit, one)))
+            made.append(Judged(one, stage, limit, judgement))
     return tuple(made)
 
 
@@ -112,8 +120,8 @@ def _put(
     limit = sheet.at(one.name, stage) if sheet else None
     judgement = judged(one, limit, readings)
     row = stored(job_id, one, stage, limit, judgement)
-    conn.exec_driver_sql(_PUT, row)
-    return Judged(one, stage, limit, judgement, _because(judgement, limit, one))
+    driver(conn).execute(_PUT, row)
+    return Judged(one, stage, limit, judgement)
 
 
 def stored(
@@ -122,16 +130,11 @@ def stored(
     """A judgement as the row that keeps it; `size` is in the characteristic's own unit where it converts."""
     size = None
     if judgement.value is not None:
-        try:
-            size = float(quantities.convert(judgement.value, judgement.unit, one.unit or judgement.unit))
-        except ValueError:
-            size = float(judgement.value)
-    text = json.dumps(kept(judgement), ensure_ascii=False, separators=(",", ":"))
+        size = float(judgement.value)
+        if one.unit and judgement.unit != one.unit and judgement.unit != "%":
+            size = float(quantities.convert(judgement.value, judgement.unit, one.unit))
+    text = audit.canonical(kept(judgement))
     return (job_id, stage, one.id, limit.id if limit else None, judgement.verdict.value, size, text)
-
-
-def _because(judgement: Judgement, limit: SheetLimit | None, one: Characteristic) -> str:
-    return because(judgement, limit.limit if limit else None, one.noun or one.label)
 
 
 def _with_derived(known: Catalogue, names: Iterable[str], kind: str) -> list[Characteristic]:
@@ -159,19 +162,26 @@ def _measured(
 ) -> dict[str, list[Measured]]:
     ids = {known.by_name[name].id for one in wanted for name in (one.sources or (one.name,))}
     owned = gauges.by_id(record, conn)
-    rows = conn.exec_driver_sql(_CURRENT.format(",".join("?" * len(ids))), (job_id, stage, *ids)).all()
+    found = rows(conn, _CURRENT.format(",".join("?" * len(ids))), (job_id, stage, *ids))
+    sure: Sure = {}
     made: dict[str, list[Measured]] = {}
-    for r in rows:
-        made.setdefault(known.by_id[r[0]].name, []).append(measured(r, owned))
+    for r in found:
+        made.setdefault(known.by_id[r[0]].name, []).append(measured(r, owned, sure))
     return made
 
 
-def measured(r: Any, owned: dict[int, Gauge]) -> Measured:
-    """A reading's row (position, typed, mark, value, unit, places, detail, gauge_id from its second column) for judging."""
-    value = None if r[4] is None else Fraction(r[4])
-    typed = Typed(r[2], Mark(r[3]), value, r[5], r[6], r[7])
-    gauge = owned.get(r[8]) if r[8] is not None else None
+def measured(r: Sequence[Any], owned: dict[int, Gauge], sure: Sure) -> Measured:
+    """A reading's row (position, typed, mark, value, unit, places, detail, gauge_id from its second column) for judging.
+
+    `sure` keeps variance and expanded uncertainty by gauge and unit from row to row.
+    """
+    gauge_id = r[8]
     variance = expanded = None
-    if gauge is not None and value is not None:
-        variance, expanded = certainty.of_reading(gauge.certainty, typed.unit)
-    return Measured(r[1], typed, variance, expanded)
+    if r[4] is None:
+        return Measured(r[1], Typed(r[2], Mark(r[3]), None, r[5], r[6], r[7]))
+    if gauge_id is not None:
+        known = sure.get((gauge_id, r[5]))
+        if known is None:
+            known = sure[(gauge_id, r[5])] = certainty.of_reading(owned[gauge_id].certainty, r[5])
+        variance, expanded = known
+    return Measured(r[1], Typed(r[2], Mark.number, quantities.kept(r[4]), r[5], r[6], r[7]), variance, expanded)

@@ -4,11 +4,13 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from sqlalchemy import Connection
 from sqlmodel import select
 
 from store.errors import NotFound, Refused
 from store.nearest import nearest
 from store.records import SHOP, Record
+from store.sqlite.engine import rows
 from store.tables.people import PersonRow
 
 RIGHTS = ("bench", "inspect", "own")
@@ -50,11 +52,15 @@ def acting(record: Record, by: str | None) -> str:
     raise NotFound("person with the initials", by, nearest(by, list(known.values())))
 
 
-def require_known(record: Record) -> None:
+def require_known(record: Record, conn: Connection | None = None) -> None:
     """Raises Refused when people are entered and nobody known acts: a change must say who made it."""
-    if record.by == SHOP and (people := listing(record)):
-        names = ", ".join(person.initials for person in people[:8])
-        raise Refused(f"say who acts: --as INITIALS, one of {names}")
+    if record.by != SHOP:
+        return
+    if conn is None:
+        with record.read() as own:
+            return require_known(record, own)
+    if found := rows(conn, "SELECT initials FROM person WHERE active ORDER BY initials LIMIT 8"):
+        raise Refused(f"say who acts: --as INITIALS, one of {', '.join(r[0] for r in found)}")
 
 
 def rights(text: str) -> tuple[str, ...]:

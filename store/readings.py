@@ -25,6 +25,7 @@ from store.records import Record
 from store.rules import quantities
 from store.rules.numbers import comparing_key
 from store.rules.readings import Mark, Typed, parse
+from store.sqlite.engine import rows
 from store.tables.readings import ReadingRow
 
 STAGES = ("as-found", "as-left")
@@ -126,11 +127,11 @@ def add_many(record: Record, tag: str, entries: Sequence[Entry]) -> tuple[Accept
 
 
 def _add(record: Record, tag: str, entries: Sequence[Entry], *, whole: bool) -> tuple[Accepted | Refused, ...]:
-    _require_known(record)
     answers: list[Reading | Refused] = []
     touched: dict[str, dict[str, None]] = {}
     moved: dict[tuple[str, str], list[Judged]] = {}
     with record.change(_action(entries), tag) as change:
+        people.require_known(record, change.conn)
         job = _job(change.conn, tag)
         change.subject = job.tag
         for entry in entries:
@@ -175,8 +176,8 @@ def of_job_in(
     if not corrected:
         sql += " AND NOT EXISTS (SELECT 1 FROM reading c WHERE c.corrects_id = r.id)"
     known = catalogue(record, conn)
-    rows = conn.exec_driver_sql(sql + " ORDER BY r.id", tuple(values)).all()
-    return tuple(_reading(r, known.by_id[r[1]].name) for r in rows)
+    found = rows(conn, sql + " ORDER BY r.id", tuple(values))
+    return tuple(_reading(r, known.by_id[r[1]].name) for r in found)
 
 
 def positions(one: Characteristic, limit: SheetLimit | None, bars: int | None = None) -> tuple[str, ...]:
@@ -244,7 +245,7 @@ def default_unit(entry: Entry, one: Characteristic, limit: SheetLimit | None, ga
 
 def standing(conn: Connection, job_id: int, stage: str, characteristic_id: int) -> dict[str, int]:
     """The keys of the readings that stand, by position."""
-    return {r[1]: r[0] for r in conn.exec_driver_sql(_AT, (job_id, stage, characteristic_id)).all()}
+    return {r[1]: r[0] for r in rows(conn, _AT, (job_id, stage, characteristic_id))}
 
 
 def place_of(
@@ -296,13 +297,12 @@ def limit_of(record: Record, conn: Connection, job: JobAtHand, one: Characterist
 
 
 def _job(conn: Connection, tag: str) -> JobAtHand:
-    row = conn.exec_driver_sql(_FIND + "j.tag = ?", (tag,)).first()
-    if row is None and (key := comparing_key(tag)):
-        found = conn.exec_driver_sql(_FIND + "j.key = ? LIMIT 2", (key,)).all()
-        row = found[0] if len(found) == 1 else None
-    if row is None:
+    found = rows(conn, _FIND + "j.tag = ?", (tag,))
+    if not found and (key := comparing_key(tag)):
+        found = rows(conn, _FIND + "j.key = ? LIMIT 2", (key,))
+    if len(found) != 1:
         raise NotFound("job with the tag", tag)
-    return JobAtHand(*row)
+    return JobAtHand(*found[0])
 
 
 def jobs_at_hand(conn: Connection) -> Iterator[JobAtHand]:
@@ -311,10 +311,6 @@ def jobs_at_hand(conn: Connection) -> Iterator[JobAtHand]:
         yield JobAtHand(*row)
 
 
-def _require_known(record: Record) -> None:
-    """Once somebody known acts that holds for this screen; asked again only while nobody does."""
-    if record.by == "shop":
-        people.require_known(record)
 
 
 def _reading(r: Any, name: str) -> Reading:

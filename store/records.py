@@ -9,7 +9,7 @@ from contextlib import contextmanager
 from dataclasses import dataclass, field, replace
 from datetime import datetime
 from pathlib import Path
-from typing import Any
+from typing import Any, TypeVar
 
 from sqlalchemy import Connection, Engine
 from sqlalchemy.exc import DBAPIError, IntegrityError
@@ -17,7 +17,7 @@ from sqlalchemy.exc import DBAPIError, IntegrityError
 from store import times
 from store.changes import Change
 from store.errors import RecordUnusable
-from store.sqlite.engine import BUSY_SECONDS, engine
+from store.sqlite.engine import BUSY_SECONDS, engine, rows
 from store.sqlite.faults import unusable
 from store.sqlite.places import share
 
@@ -25,6 +25,7 @@ APPLICATION_ID = 0x574C494E
 HEAD = "0001"
 SHOP = "shop"
 Now = Callable[[], datetime]
+Kept = TypeVar("Kept")
 
 
 @dataclass(frozen=True)
@@ -36,6 +37,7 @@ class Record:
     by: str
     clock: Now
     cache: dict[Any, Any] = field(default_factory=dict, repr=False, compare=False)
+    idle: list[Connection] = field(default_factory=list, repr=False, compare=False)
 
     def now(self) -> str:
         """The present moment as the record keeps it."""
@@ -50,34 +52,67 @@ class Record:
     @contextmanager
     def read(self) -> Iterator[Connection]:
         """One view of the record: every statement inside sees the same state. Raises RecordUnusable."""
-        with self._faults(), self.engine.connect() as conn, conn.begin():
+        with self._transaction(writing=False) as conn:
             yield conn
 
     @contextmanager
     def write(self) -> Iterator[Connection]:
         """A write transaction without an audit entry, for derived data only (judgements, indexes)."""
-        with self._faults(), self.engine.connect().execution_options(writing=True) as conn, conn.begin():
+        with self._transaction(writing=True) as conn:
             yield conn
 
     @contextmanager
     def change(self, action: str, subject: str = "") -> Iterator[Change]:
         """A write transaction that ends in one audit entry. All or nothing. Raises RecordUnusable."""
-        with self.write() as conn:
+        with self._transaction(writing=True) as conn:
             change = Change(conn, self.now(), self.by, action, subject)
             yield change
             change.close()
 
+    def kept(self, conn: Connection, name: str, stamp: str, read: Callable[[Connection], Kept]) -> Kept:
+        """What is read once and kept in memory until `stamp` (a statement) gives another answer.
+
+        The stamp is asked for once in a transaction, in which the answer cannot change but by this transaction itself;
+        who changes what is kept calls `forget`.
+        """
+        seen = conn.info.setdefault("seen", {})
+        if name in seen:
+            found: Kept = seen[name]
+            return found
+        now = rows(conn, stamp)
+        kept = self.cache.get(name)
+        if kept is None or kept[0] != now:
+            kept = (now, read(conn))
+            self.cache[name] = kept
+        seen[name] = kept[1]
+        made: Kept = kept[1]
+        return made
+
+    def forget(self, conn: Connection, name: str) -> None:
+        """Have `kept` look again: called inside the transaction that changes what is kept."""
+        self.cache.pop(name, None)
+        conn.info.setdefault("seen", {}).pop(name, None)
+
     @contextmanager
-    def _faults(self) -> Iterator[None]:
+    def _transaction(self, *, writing: bool) -> Iterator[Connection]:
+        """A transaction on a connection that is kept for the next one: making one anew costs as much as the insert."""
         try:
-            yield
-        except IntegrityError:
+            conn = self.idle.pop() if self.idle else self.engine.connect()
+            conn.info.update(writing=writing, seen={})
+            try:
+                with conn.begin():
+                    yield conn
+            finally:
+                self.idle.append(conn)
+        except (IntegrityError, sqlite3.IntegrityError):
             raise
         except (DBAPIError, sqlite3.DatabaseError) as fault:
             raise unusable(self.path, fault) from fault
 
     def close(self) -> None:
         """Let go of the file; the last one out folds the write-ahead log into it."""
+        while self.idle:
+            self.idle.pop().close()
         self.engine.dispose()
 
 

@@ -14,7 +14,9 @@ def now() -> datetime:
 
 def stored(moment: datetime) -> str:
     """`2026-12-01T11:05:33Z`; a moment without an offset is taken as local time."""
-    return moment.astimezone(UTC).strftime("%Y-%m-%dT%H:%M:%SZ")
+    if moment.tzinfo is not UTC:
+        moment = moment.astimezone(UTC)
+    return moment.replace(microsecond=0, tzinfo=None).isoformat() + "Z"
 
 
 def read(text: str) -> str:

@@ -85,13 +85,7 @@ def catalogue(record: Record, conn: Connection | None = None) -> Catalogue:
     if conn is None:
         with record.read() as own:
             return catalogue(record, own)
-    newest = int(conn.exec_driver_sql("SELECT coalesce(max(id),0) FROM characteristic").scalar() or 0)
-    kept = record.cache.get("catalogue")
-    if kept is None or kept[0] != newest:
-        kept = (newest, _read(conn))
-        record.cache["catalogue"] = kept
-    found: Catalogue = kept[1]
-    return found
+    return record.kept(conn, "catalogue", "SELECT max(id) FROM characteristic", _read)
 
 
 def _read(conn: Connection) -> Catalogue:

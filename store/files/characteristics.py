@@ -29,7 +29,7 @@ def _take(loading: Loading, lines: Iterator[Numbered]) -> int:
             loading.refuse(number, "characteristic", fault)
         else:
             taken += 1
-    loading.record.cache.pop("catalogue", None)
+    loading.record.forget(loading.change.conn, "catalogue")
     return taken
 
 

@@ -20,6 +20,7 @@ WIDTHS_MM = {"a4": 178.0, "letter": 183.9}
 
 _LABEL_MM, _LIMIT_MM, _CELL_MM, _RULE_MM = 43.0, 23.0, 18.5, 36.0
 _MM_A_LETTER = 2.0
+_RUNNING = "running tests"
 _TOGETHER = 700
 """A row of more characters than this may be parted by the end of a page."""
 
@@ -73,6 +74,7 @@ def of(report: Report, seen: Seen = in_print) -> dict[str, Any]:
         "decision": [pen.text(line, 170) for line in sections.decision(report)],
         "cautions": [pen.text(line, 170) for line in report.cautions],
         "people": pen.pairs(sections.people(report), 150),
+        "to-sign": report.signature is not None,
         "promise": list(sections.PROMISE),
         "end": pen.line(brief(sections.end(report), 80)),
     }
@@ -117,7 +119,7 @@ class _Pen:
 
     def group(self, group: wording.Group) -> dict[str, Any]:
         return {
-            "component": self.text(group.component, self.line_mm),
+            "component": self.text(group.component, self.line_mm) if group.component.casefold() != _RUNNING else "",
             "rows": [self.row(row) for row in group.rows],
         }
 

@@ -56,7 +56,7 @@ def identity(report: Report) -> Ledger:
         ("serial", unit.serial),
         ("volts", unit.volts),
         ("rotation", f"{unit.rotation}{viewed}" if unit.rotation else ""),
-        ("made with", ", ".join(counts)),
+        ("details", ", ".join(counts)),
         ("job tag", report.tag),
         ("earlier visit", f"tag {report.earlier_tag}" if report.earlier_tag else ""),
         ("limit sheet", f"revision {report.revision}" if report.revision is not None else "none"),

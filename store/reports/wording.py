@@ -32,7 +32,7 @@ class Cell:
 
 @dataclass(frozen=True, slots=True)
 class Row:
-    """One characteristic. `limits` are (min or max, figure) lines, `says` (verdict, sentence) lines that explain it."""
+    """One characteristic. `limits` are (min or max, figure) lines, `says` (loud, plain or quiet; sentence) lines."""
 
     label: str
     unit: str
@@ -157,33 +157,38 @@ def _cell(result: Result | None, unit: str) -> Cell | None:
 
 
 def _figure(one: Reading, unit: str) -> str:
-    """A reading as printed: its figure, its unit where it is another, and what was typed where that looks otherwise."""
+    """A reading as printed: its figure, its unit where it is another than the row's; a dash where none was taken."""
+    if one.mark == "not measured":
+        return "–"
     figure = one.shown or one.typed
-    if one.shown_unit and one.shown_unit != unit:
-        figure = f"{figure} {one.shown_unit}"
-    typed = one.typed.strip()
-    same = typed.replace(",", ".").replace(" ", "").casefold()
-    known = {one.shown, figure, f"{one.shown}{one.shown_unit}"}
-    if same not in {text.replace(" ", "").casefold() for text in known}:
-        figure = f"{figure} (typed {typed})"
-    return figure
+    return f"{figure} {one.shown_unit}" if one.shown_unit and one.shown_unit != unit else figure
+
+
+def _looks_otherwise(one: Reading) -> bool:
+    """Whether what was typed is more than the figure shown, with or without its unit."""
+    typed = one.typed.replace(",", ".").replace(" ", "").casefold()
+    return typed not in {text.replace(" ", "").casefold() for text in (one.shown, f"{one.shown}{one.shown_unit}")}
 
 
 def _says(report: Report, one: Characteristic) -> tuple[tuple[str, str], ...]:
-    """Why a result is anything but in, what the rules warn of, notes on readings, and concessions."""
+    """Why a result is anything but in, what the rules warn of, notes on readings, concessions, and what was typed."""
     lines: list[tuple[str, str]] = []
     for result in one.results:
         stage = STAGE_WORDS.get(result.stage, result.stage)
         if result.verdict != "in" and result.because:
-            lines.append((result.verdict, f"{stage}: {result.because}"))
-        lines += [("", f"{stage}: {remark}") for remark in result.remarks]
+            # What was out as found is why the unit came; what is out as left is what must not be overlooked.
+            weight = "loud" if result.verdict == "out" and result is one.results[-1] else "plain"
+            lines.append((weight, f"{stage}: {result.because}"))
+        lines += [("plain", f"{stage}: {remark}") for remark in result.remarks]
+        many = len(result.readings) > 1
         lines += [
-            ("", f"{stage}{', ' + r.position if len(result.readings) > 1 else ''}: {r.note}")
-            for r in result.readings
-            if r.note
+            ("plain", f"{stage}{', ' + r.position if many else ''}: {r.note}") for r in result.readings if r.note
         ]
+        if any(map(_looks_otherwise, result.readings)):
+            typed = "; ".join(f"{r.position}: {r.typed.strip()}" if many else r.typed.strip() for r in result.readings)
+            lines.append(("quiet", f"{stage}, as typed: {typed}"))
     lines += [
-        ("", f"conceded by {person(c.by.initials, c.by.name)}, {figures.day(c.at)}: {c.because}")
+        ("plain", f"conceded by {person(c.by.initials, c.by.name)}, {figures.day(c.at)}: {c.because}")
         for c in report.concessions
         if c.characteristic == one.name
     ]
@@ -191,9 +196,7 @@ def _says(report: Report, one: Characteristic) -> tuple[tuple[str, str], ...]:
 
 
 def _gauges(report: Report, one: Characteristic) -> str:
-    names: list[str] = []
-    for result in one.results:
-        names += [r.gauge for r in result.readings if r.gauge and r.gauge not in names]
+    names = dict.fromkeys(r.gauge for result in one.results for r in result.readings if r.gauge)
     made = []
     for name in names:
         gauge = report.gauge(name)

@@ -176,6 +176,12 @@ def plain(value: Fraction) -> str:
     return rounded(value, places)
 
 
+def kept(text: str) -> Fraction:
+    """The value of `str(Fraction)`, read several times faster than by Fraction itself."""
+    numerator, _, denominator = text.partition("/")
+    return Fraction(int(numerator), int(denominator or 1))
+
+
 def rounded(value: Fraction, places: int) -> str:
     """The value to so many decimals, half to even; never `-0`."""
     scaled = round(value * 10**places) if places else round(value)

@@ -2,14 +2,16 @@
 
 from __future__ import annotations
 
-from sqlalchemy import CheckConstraint, Index
+from sqlalchemy import CheckConstraint, Index, text
 from sqlmodel import Field, SQLModel
 
 
 class ReadingRow(SQLModel, table=True):
     """One typed value of one characteristic at one position at one stage.
 
-    Rows are never updated or deleted (triggers refuse both). `corrects_id` names the reading that this one replaces;
+    Rows are never updated or deleted (triggers refuse both). Each index costs a page of every durable write, so there is
+    no more than one that is always written; a gauge's readings are found by a scan, which a recall can wait for.
+    `corrects_id` names the reading that this one replaces;
     `why` says for what reason. `value` is exact decimal or fraction text in `unit`; None for marks.
     """
 
@@ -17,8 +19,7 @@ class ReadingRow(SQLModel, table=True):
     __table_args__ = (
         CheckConstraint("stage IN ('as-found','as-left')", name="stage_is_known"),
         Index("reading_of_job", "job_id", "stage", "characteristic_id"),
-        Index("reading_corrected_once", "corrects_id", unique=True),
-        Index("reading_by_gauge", "gauge_id"),
+        Index("reading_corrected_once", "corrects_id", unique=True, sqlite_where=text("corrects_id IS NOT NULL")),
     )
 
     id: int | None = Field(default=None, primary_key=True)
@@ -47,6 +48,7 @@ class JudgementRow(SQLModel, table=True):
     """
 
     __tablename__ = "judgement"
+    __table_args__ = {"sqlite_with_rowid": False}  # noqa: RUF012  SQLAlchemy's own way; one page a write, not two
 
     job_id: int = Field(foreign_key="job.id", primary_key=True)
     stage: str = Field(primary_key=True)

@@ -205,7 +205,7 @@ TABLES = (
     FOREIGN KEY(job_id) REFERENCES job (id),
     FOREIGN KEY(characteristic_id) REFERENCES characteristic (id),
     FOREIGN KEY(limit_id) REFERENCES wear_limit (id)
-)""",
+) WITHOUT ROWID""",
     """CREATE TABLE note (
     id INTEGER NOT NULL,
     job_id INTEGER NOT NULL,
@@ -241,8 +241,7 @@ TABLES = (
     FOREIGN KEY(gauge_id) REFERENCES gauge (id),
     FOREIGN KEY(corrects_id) REFERENCES reading (id)
 )""",
-    "CREATE INDEX reading_by_gauge ON reading (gauge_id)",
-    "CREATE UNIQUE INDEX reading_corrected_once ON reading (corrects_id)",
+    "CREATE UNIQUE INDEX reading_corrected_once ON reading (corrects_id) WHERE corrects_id IS NOT NULL",
     "CREATE INDEX reading_of_job ON reading (job_id, stage, characteristic_id)",
 )
 
