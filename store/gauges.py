@@ -54,6 +54,11 @@ class Gauge:
         """The calibration in force: the newest."""
         return self.calibrations[-1] if self.calibrations else None
 
+    def calibration_at(self, at: str) -> Calibration | None:
+        """The calibration in force on the day of `at`: the newest not after it, else the first."""
+        before = [c for c in self.calibrations if (c.calibrated or "") <= at[:10]]
+        return before[-1] if before else (self.calibrations[0] if self.calibrations else None)
+
     @property
     def due(self) -> str | None:
         """The date at which it is due; None where none is set."""
