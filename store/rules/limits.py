@@ -13,6 +13,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from enum import StrEnum
 from fractions import Fraction
+from math import floor
 from typing import Any
 
 from store.rules import certainty, quantities
@@ -301,7 +302,7 @@ def because(judged: Judgement, limit: Limit | None, noun: str) -> str:
     if judged.verdict is Verdict.in_doubt:
         sentence += "; the gauge cannot tell"
     if judged.probability is not None and judged.verdict is not Verdict.not_measured and judged.probability < _CERTAIN:
-        sentence += f" ({quantities.rounded(Fraction(judged.probability * 100), 1)} % sure to be inside)"
+        sentence += f" ({floor(judged.probability * 1000 + 1e-9) / 10} % sure to be inside)"
     if judged.reason == "unknown-u":
         sentence += "; judged as read, the gauge's uncertainty is not known"
     return sentence
@@ -328,7 +329,9 @@ def _subject(judged: Judgement, noun: str) -> str:
     kind = {Statistic.mean: "the mean", Statistic.spread: "the spread"}.get(judged.statistic)
     if kind:
         return f"{kind} of {judged.count}"
-    if judged.worst_at and judged.worst_at != "1" or judged.count > 1:
+    if " " in judged.worst_at:
+        return f"{noun} ({judged.worst_at})"
+    if (judged.worst_at and judged.worst_at != "1") or judged.count > 1:
         return f"{noun} {judged.worst_at}".strip()
     return noun
 
@@ -339,13 +342,19 @@ def _against(judged: Judgement, limit: Limit) -> str:
     ends = [(end, name) for end, name in ((limit.low, "minimum"), (limit.high, "maximum")) if end is not None]
     text = quantities.shown(value, judged.places, [end for end, _ in ends])
     end, name = min(ends, key=lambda pair: value - pair[0] if pair[1] == "minimum" else pair[0] - value)
-    shown_end = quantities.plain(end)
+    shown_end = _exactly(end, judged.places)
     if value == end:
         fails = "" if judged.verdict is not Verdict.out else ", which fails"
         return f"{_with_unit(text, judged.unit)}, equal to the {name}{fails}"
-    gap = quantities.plain(abs(Fraction(text) - end))
+    gap = _exactly(abs(Fraction(text) - end), judged.places)
     side = "under" if value < end else "over"
     return f"{_with_unit(text, judged.unit)}, {gap} {side} the {shown_end} {name}"
+
+
+def _exactly(size: Fraction, places: int) -> str:
+    """An exact size with at least so many decimals."""
+    text = quantities.rounded(size, places)
+    return text if Fraction(text) == size else quantities.plain(size)
 
 
 def _with_unit(text: str, unit: str) -> str:
