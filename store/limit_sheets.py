@@ -282,7 +282,7 @@ def _size(what: Characteristic, quantity: Quantity, side: str, text: str, unit: 
     if quantity is Quantity.attribute:
         raise Refused(f"{what.name}: passes or fails; it has no {side} size")
     try:
-        typed = parse(text, quantity, unit)
+        typed = parse(text, quantity, unit, signed=what.derive.startswith("clearance"))
     except Refused as fault:
         raise Refused(f"{what.name}: {side}: {fault}") from None
     if typed.mark is not Mark.number or typed.value is None:

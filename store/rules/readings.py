@@ -55,7 +55,7 @@ class Slip:
 
 
 LONGEST = 200
-_NEGATIVE = {Quantity.temperature, Quantity.angle, Quantity.length}
+_NEGATIVE = {Quantity.temperature, Quantity.angle}
 _NUMBER = re.compile(
     r"""\s*(?P<sign>[+-])?\s*
     (?: (?P<whole>\d+)[ ]+(?P<num>\d+)\s*/\s*(?P<den>\d+)
@@ -70,13 +70,13 @@ _ATTRIBUTE = re.compile(
 )
 
 
-def parse(text: str, quantity: Quantity, unit: str) -> Typed:
+def parse(text: str, quantity: Quantity, unit: str, *, signed: bool = False) -> Typed:
     """A typed reading. `unit` is taken where none is typed: the gauge's, else that of the sheet.
 
     Taken: 11.4  11,4  .448  +0.02  7/16  1 3/16  11.4 mm  0.448in  0.448", with spaces and leading zeros as gauges
     send them; `not measured REASON`; for tests that pass or fail: `pass`, `fail bars 4-5`, `cannot judge WHY`.
-    A length may be negative (a comparator's deviation, an end play below zero is not a size: the limit judges it);
-    other sizes may not. Raises ReadingRefused in one line that says how to write it.
+    Temperatures and angles may lie below zero; other sizes only where `signed` (the limit of a fit, say: tight is below
+    zero). Raises ReadingRefused in one line that says how to write it.
     """
     stripped = text.strip()
     if not stripped:
@@ -88,7 +88,7 @@ def parse(text: str, quantity: Quantity, unit: str) -> Typed:
         return _attribute(stripped)
     if len(stripped) > LONGEST:
         raise ReadingRefused(f"{brief(stripped, 40)!r} is no reading; it has {len(stripped):,} characters")
-    return _number(stripped, quantity, unit)
+    return _number(stripped, quantity, unit, signed)
 
 
 def _attribute(text: str) -> Typed:
@@ -102,7 +102,7 @@ def _attribute(text: str) -> Typed:
     return Typed(text, mark, None, "", 0, " ".join(found["detail"].split()))
 
 
-def _number(text: str, quantity: Quantity, unit: str) -> Typed:
+def _number(text: str, quantity: Quantity, unit: str, signed: bool) -> Typed:
     found = _NUMBER.match(text)
     if found is None:
         raise ReadingRefused(_why_not(text))
@@ -119,8 +119,8 @@ def _number(text: str, quantity: Quantity, unit: str) -> Typed:
             raise ReadingRefused(f"{known.symbol} is not a unit of {quantity}; write one of {_units(quantity)}")
         symbol = known.symbol
     value, places = _value(found, text)
-    if value < 0 and quantity not in _NEGATIVE:
-        raise ReadingRefused(f"{brief(text, 40)}: a {quantity} is not below zero")
+    if value < 0 and not signed and quantity not in _NEGATIVE:
+        raise ReadingRefused(f"{brief(text, 40)}: a {quantity} is not below zero; does the gauge send deviations?")
     if quantity is Quantity.count and value.denominator != 1:
         raise ReadingRefused(f"{brief(text, 40)}: a count is a whole number")
     return Typed(text, Mark.number, value, symbol, places, "")
