@@ -55,7 +55,7 @@ def acting(record: Record, by: str | None) -> str:
 def require_known(record: Record, conn: Connection | None = None) -> None:
     """Raises Refused when people are entered and nobody known acts: a change must say who made it."""
     if record.by != SHOP:
-        return
+        return None
     if conn is None:
         with record.read() as own:
             return require_known(record, own)

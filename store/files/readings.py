@@ -10,7 +10,7 @@ from sqlalchemy import Connection
 
 from store import gauges, judgements, readings, times
 from store.catalogue import Characteristic, catalogue
-from store.errors import NotFound, Refused, brief
+from store.errors import Refused, brief
 from store.files.kinds import Kind, Line, Loading, Numbered
 from store.gauges import Gauge
 from store.limit_sheets import SheetLimit

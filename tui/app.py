@@ -1,0 +1,164 @@
+"""The application: wiring only. It paints a frame, opens the record in a thread, and hands it to the screens."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, ClassVar
+
+from textual.app import App, SystemCommand
+from textual.binding import Binding, BindingType
+from textual.message import Message
+from textual.screen import Screen
+
+from tui.screens.places import PLACES, load
+from tui.theme import THEMES
+from tui.writer import Order, Writer
+
+if TYPE_CHECKING:
+    from store.records import Record
+
+
+class Wearline(App[None]):
+    """The screens on one record. `record` is None until it is open; screens are told by `record_opened`."""
+
+    CSS_PATH = "app.tcss"
+    TITLE = "Wearline"
+    ENABLE_COMMAND_PALETTE = True
+    BINDINGS: ClassVar[list[BindingType]] = [
+        Binding("f1", "explain", "explain", priority=True),
+        Binding("ctrl+q", "quit", "quit", show=False, priority=True),
+        Binding("ctrl+t", "other_theme", "paper or graphite", show=False),
+    ]
+
+    class Opened(Message):
+        """The record is open."""
+
+        def __init__(self, record: Record) -> None:
+            self.record = record
+            super().__init__()
+
+    class Unopened(Message):
+        """The record cannot be opened; `why` is one line."""
+
+        def __init__(self, why: str) -> None:
+            self.why = why
+            super().__init__()
+
+    class Written(Message):
+        """What the writer said of a batch."""
+
+        def __init__(self, answers: Sequence[tuple[Order, Any]]) -> None:
+            self.answers = answers
+            super().__init__()
+
+    def __init__(self, path: Path, acting: str | None = None) -> None:
+        super().__init__()
+        self.path, self.acting = path, acting
+        self.record: Record | None = None
+        self.writer: Writer | None = None
+        for theme in THEMES.values():
+            self.register_theme(theme)
+        self.theme = "graphite"
+
+    def on_mount(self) -> None:
+        """Paint the bench first; only then is the store imported and the record opened."""
+        self.push_screen(load("bench")())
+        self.call_after_refresh(self.open_record)
+
+    def open_record(self) -> None:
+        """Open the record in a thread."""
+        self.run_worker(self._open, thread=True, group="open", exit_on_error=False)
+
+    def _open(self) -> None:
+        from store.errors import WearlineError
+
+        try:
+            from store import records, shop
+
+            record = records.open(self.path, by=self.acting, create=True)
+            theme = shop.value(record, "theme")
+        except WearlineError as fault:
+            self.post_message(self.Unopened(str(fault)))
+            return
+        self.call_from_thread(setattr, self, "theme", theme)
+        self.post_message(self.Opened(record))
+
+    def on_wearline_opened(self, message: Opened) -> None:
+        """Start the writer and tell every screen."""
+        self.record = message.record
+        self.writer = Writer(message.record, lambda answers: self._written(answers))
+        self.tell_screens("record_opened")
+
+    def on_wearline_unopened(self, message: Unopened) -> None:
+        """Say why there is no record, on the screen and when the program has left."""
+        self.exit(return_code=1, message=f"wearline: {message.why}")
+
+    def _written(self, answers: Sequence[tuple[Order, Any]]) -> None:
+        self.post_message(self.Written(answers))
+
+    def on_wearline_written(self, message: Written) -> None:
+        """Pass the writer's answers on to the screens that wait for them."""
+        self.tell_screens("written", message.answers)
+
+    def tell_screens(self, what: str, *values: Any) -> None:
+        """Call a method on every screen that has it, the one on top first."""
+        for screen in reversed(self.screen_stack):
+            method: Callable[..., None] | None = getattr(screen, what, None)
+            if method is not None:
+                method(*values)
+
+    def act_as(self, initials: str | None) -> None:
+        """Somebody else works here now."""
+        assert self.record is not None
+        assert self.writer is not None
+        self.record = self.record.acting(initials or "")
+        self.writer.record = self.record
+        self.tell_screens("person_changed")
+
+    def go(self, place: str, *values: Any) -> None:
+        """Open a screen by its name in PLACES."""
+        self.push_screen(load(place)(*values))
+
+    def action_go(self, place: str) -> None:
+        """`go` for bindings and the palette."""
+        if not isinstance(self.screen, load(place)):
+            self.go(place)
+
+    def action_explain(self) -> None:
+        """Explain the screen on top in the trade's words."""
+        from tui.screens.explain import Explain
+
+        if not isinstance(self.screen, Explain):
+            self.push_screen(Explain(self.screen))
+
+    def action_other_theme(self) -> None:
+        """Paper by day, graphite by night."""
+        self.theme = "paper" if self.theme == "graphite" else "graphite"
+
+    def get_system_commands(self, screen: Screen[Any]) -> Iterable[SystemCommand]:
+        """Every place and every action of the screen, for the palette."""
+        for name, place in PLACES.items():
+            if not place.needs_more:
+                yield SystemCommand(place.title, place.says, lambda name=name: self.action_go(name))  # type: ignore[misc]
+        for binding in screen.active_bindings.values():
+            if binding.binding.description and binding.enabled:
+                action = binding.binding.action
+                yield SystemCommand(
+                    binding.binding.description.capitalize(),
+                    f"key {binding.binding.key_display or binding.binding.key}",
+                    lambda action=action, node=binding.node: self.call_later(self.run_action, action, node),  # type: ignore[misc]
+                )
+        yield SystemCommand("Paper or graphite", "the other theme", self.action_other_theme)
+
+    async def action_quit(self) -> None:
+        """Write what is queued, then leave."""
+        self.tell_screens("leaving")
+        self.exit()
+
+    def on_unmount(self) -> None:
+        """Nothing that was typed is left behind."""
+        if self.writer is not None:
+            self.writer.close()
+        if self.record is not None:
+            self.record.close()

@@ -1,0 +1,183 @@
+"""The bench: open jobs by where they stand, search as one types, and taking in a core."""
+
+from __future__ import annotations
+
+from typing import Any, ClassVar
+
+from rich.text import Text
+from textual import events, on
+from textual.app import ComposeResult
+from textual.binding import Binding, BindingType
+from textual.widgets import Input, Static
+
+from tui.screens.standing import Standing
+from tui.widgets.listing import Column, Item, Listing
+
+LOOK_AGAIN_SECONDS = 0.5
+
+
+class Bench(Standing):
+    """The start of everything."""
+
+    CSS_PATH = "bench.tcss"
+    TITLE_WORDS = "Bench"
+    EXPLAINS = (
+        "Every open job, newest first, with where it stands and what is next. Type to search tag, serial, model or customer; "
+        "arrows move, Enter opens. F2 takes in a core: a unit that was released before becomes a comeback at once."
+    )
+    BINDINGS: ClassVar[list[BindingType]] = [
+        Binding("f2", "take_in", "take in"),
+        Binding("f3", "ended", "ended too", tooltip="show jobs that have ended too, or only open ones"),
+        Binding("f4", "who", "who", tooltip="say who works here now"),
+        Binding("f5", "app.go('limits')", "limits"),
+        Binding("f9", "app.go('gauges')", "gauges"),
+    ]
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.with_ended = False
+        self.version: Any = None
+
+    def body(self) -> ComposeResult:
+        """Search, counts, list."""
+        yield Input(placeholder="search tag, serial, model, customer", id="search")
+        yield Static("opening the record ...", id="counts", markup=False)
+        listing = Listing(
+            [
+                Column("tag", 7), Column("model", 12), Column("serial", 10), Column("customer", 0), Column("stands", 10),
+                Column("days", 4, right=True), Column("out", 3, right=True), Column("?", 2, right=True),
+                Column("next", 18, quiet=True),
+            ],
+            empty="no job here; F2 takes in a core",
+            id="jobs",
+        )  # fmt: skip
+        listing.can_focus = False
+        listing.follows_input = True  # type: ignore[attr-defined]
+        listing.waiting = True
+        yield listing
+
+    def on_mount(self) -> None:
+        """Look for what others have written, twice a second."""
+        super().on_mount()
+        self.query_one("#search").focus()
+        self.set_interval(LOOK_AGAIN_SECONDS, self.look_again)
+
+    def record_opened(self) -> None:
+        """Fill the list; ask who works here where people are entered and nobody is said."""
+        self.say_where()
+        self.fill()
+        self.ask("people", self._people, self._must_say_who)
+
+    def _people(self) -> int:
+        from store import people
+
+        assert self.record is not None
+        return len(people.listing(self.record))
+
+    def _must_say_who(self, people: int) -> None:
+        if people and self.record is not None and self.record.by == "shop":
+            self.action_who()
+
+    def look_again(self) -> None:
+        """Fill the list anew when the record has changed, by this program or another."""
+        if self.record is not None and self.app.screen is self:
+            self.ask("version", self._version, self._compare)
+
+    def _version(self) -> Any:
+        from store import watch
+
+        assert self.record is not None
+        return watch.version(self.record)
+
+    def _compare(self, version: Any) -> None:
+        if version != self.version:
+            known, self.version = self.version, version
+            if known is not None:
+                self.fill()
+
+    def on_screen_resume(self) -> None:
+        """Back from another screen: show what has changed."""
+        if self.record is not None:
+            self.say_where()
+            self.fill()
+
+    def fill(self) -> None:
+        """Ask for the list that the search and the switch call for."""
+        search = self.query_one("#search", Input).value
+        outcome = None if self.with_ended else "open"
+
+        def question() -> Any:
+            from store import jobs
+
+            assert self.record is not None
+            return (
+                jobs.listing(self.record, outcome=outcome, search=search),
+                jobs.counts(self.record),
+                self.record.now(),
+            )
+
+        self.ask("jobs", question, self._show)
+
+    def _show(self, answer: Any) -> None:
+        lines, counts, now = answer
+        self.query_one("#counts", Static).update(
+            Text("  ".join(f"{count} {stands}" for stands, count in counts.items()), style="", no_wrap=True)
+        )
+        self.query_one("#jobs", Listing).show([_item(line, now) for line in lines])
+
+    @on(Input.Changed, "#search")
+    def search_changed(self) -> None:
+        """Search as one types."""
+        if self.record is not None:
+            self.fill()
+
+    @on(Input.Submitted, "#search")
+    def open_first(self) -> None:
+        """Enter opens the line under the cursor."""
+        self.query_one("#jobs", Listing).choose()
+
+    def on_key(self, event: events.Key) -> None:
+        """The arrows move in the list while letters go to the search."""
+        if event.key in {"up", "down", "pageup", "pagedown"}:
+            self.query_one("#jobs", Listing).press(event.key)
+            event.stop()
+        elif event.key == "escape":
+            self.query_one("#search", Input).value = ""
+
+    @on(Listing.Chosen)
+    def open_job(self, message: Listing.Chosen) -> None:
+        """Open the job of the chosen line."""
+        self.wearline.go("job", message.item.value)
+
+    def action_take_in(self) -> None:
+        """Take in a core, then open its job."""
+        from tui.screens.take_in import TakeIn
+
+        if self.record is not None:
+            self.app.push_screen(TakeIn(), lambda tag: self.wearline.go("job", tag) if tag else None)
+
+    def action_ended(self) -> None:
+        """Ended jobs too, or open ones only."""
+        self.with_ended = not self.with_ended
+        self.fill()
+
+    def action_who(self) -> None:
+        """Say who works here now."""
+        from tui.screens.who import Who
+
+        if self.record is not None:
+            self.app.push_screen(Who(), lambda who: self.wearline.act_as(who) if who else None)
+
+
+def _item(line: Any, now: str) -> Item:
+    from store import times
+
+    days = max(0, int(times.days_between(line.taken_in, line.ended or now)))
+    return Item(
+        (
+            line.tag, line.model, line.serial, ("comeback  " if line.earlier else "") + line.customer, line.stands, str(days),
+            str(line.out or ""), str(line.in_doubt or ""), line.next,
+        ),
+        line.tag,
+        "quiet" if line.ended else "",
+    )  # fmt: skip

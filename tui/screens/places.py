@@ -1,0 +1,53 @@
+"""The places of the program by name. To add one: write its file, a class with the screen's name, and a line here."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from importlib import import_module
+from typing import Any
+
+
+@dataclass(frozen=True, slots=True)
+class Place:
+    """A screen: where its class is, its title and what the palette says of it. `needs_more`: opened with a tag or so."""
+
+    module: str
+    name: str
+    title: str
+    says: str
+    needs_more: bool = False
+
+
+PLACES = {
+    "bench": Place("tui.screens.bench", "Bench", "Bench", "open jobs, and taking in a core"),
+    "job": Place("tui.screens.job", "JobScreen", "Job", "one job: sheet, notes, history", needs_more=True),
+    "limits": Place("tui.screens.limits", "Limits", "Limits", "wear limits of a model, with their sources"),
+    "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall"),
+}
+
+
+@dataclass(frozen=True, slots=True)
+class Pane:
+    """A part of the Job screen: a widget with `show(job)`, called when it comes to the front or the job has changed."""
+
+    module: str
+    name: str
+    title: str
+
+
+PANES = {
+    "notes": Pane("tui.screens.job_notes", "JobNotes", "notes"),
+    "history": Pane("tui.screens.job_history", "JobHistory", "history"),
+}
+
+
+def load(place: str) -> Any:
+    """The class of a screen, imported now. Raises KeyError."""
+    found = PLACES[place]
+    return getattr(import_module(found.module), found.name)
+
+
+def load_pane(pane: str) -> Any:
+    """The class of a pane of the Job screen, imported now. Raises KeyError."""
+    found = PANES[pane]
+    return getattr(import_module(found.module), found.name)

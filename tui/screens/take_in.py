@@ -1,0 +1,122 @@
+"""Taking in a core: model by number, serial, and what the ticket says; earlier jobs of the unit are shown at once."""
+
+from __future__ import annotations
+
+from typing import Any, ClassVar
+
+from rich.text import Text
+from textual import on
+from textual.app import ComposeResult
+from textual.binding import Binding, BindingType
+from textual.containers import Horizontal, VerticalScroll
+from textual.widgets import Input, Static
+
+from tui.screens.standing import Standing
+
+FIELDS = (
+    ("model", "model", "the unit's number, or any number that leads to it"),
+    ("serial", "serial", "or the shop's own engraved mark"),
+    ("customer", "customer", ""),
+    ("application", "application", "what it works on"),
+    ("complaint", "complaint", "in the customer's words"),
+    ("hours", "hours run", "where known"),
+    ("tag", "tag", "empty: the next number"),
+)
+
+
+class TakeIn(Standing):
+    """The form; answers with the tag of the new job, or None."""
+
+    CSS_PATH = "take_in.tcss"
+    TITLE_WORDS = "Bench > take in a core"
+    EXPLAINS = (
+        "Enter goes to the next line; ctrl+s takes the core in from anywhere. Model and serial are needed, all else can wait. "
+        "Any number that leads to a model will do. Earlier jobs of the same unit show below; a release makes this a comeback.\n\n"
+        "Disconnect and drain before stripping; treat unknown old insulation as suspect and do not dry-blow it."
+    )
+    BINDINGS: ClassVar[list[BindingType]] = [
+        Binding("ctrl+s", "take", "take in", priority=True),
+        Binding("escape", "close", "back"),
+    ]
+
+    def body(self) -> ComposeResult:
+        """A line a field, then what is known."""
+        with VerticalScroll(can_focus=False):
+            for name, label, hint in FIELDS:
+                with Horizontal():
+                    yield Static(label, markup=False, classes="label")
+                    yield Input(id=name, placeholder=hint)
+            yield Static("", id="known", markup=False)
+
+    def on_mount(self) -> None:
+        """Begin with the model."""
+        super().on_mount()
+        self.query_one("#model").focus()
+
+    @on(Input.Submitted)
+    def next_field(self, event: Input.Submitted) -> None:
+        """Enter goes on; from the last field it takes the core in."""
+        names = [name for name, _, _ in FIELDS]
+        here = names.index(event.input.id or "")
+        if here + 1 < len(names):
+            self.query_one(f"#{names[here + 1]}").focus()
+        else:
+            self.action_take()
+
+    @on(Input.Changed, "#model,#serial")
+    def look_up(self) -> None:
+        """What model this is, and what this unit was here for before."""
+        model, serial = (self.query_one(f"#{name}", Input).value for name in ("model", "serial"))
+
+        def question() -> Any:
+            from store import jobs, models
+            from store.errors import NotFound
+
+            assert self.record is not None
+            if not model.strip():
+                return None
+            try:
+                found = models.find(self.record, model)
+            except NotFound as fault:
+                return str(fault)
+            return found, jobs.of_unit(self.record, found.number, serial) if serial.strip() else ()
+
+        self.ask("known", question, self._show)
+
+    def _show(self, answer: Any) -> None:
+        from store import times
+
+        text = Text()
+        if isinstance(answer, str):
+            text.append(answer, style="italic")
+        elif answer is not None:
+            model, earlier = answer
+            text.append(f"{model.number}  {model.kind}  {model.volts} V  {model.rotation}  {model.note}\n")
+            for job in earlier:
+                text.append(f"{job.tag}  {times.local(job.taken_in)[:10]}  {job.outcome}", style="bold")
+                text.append(f"  {times.local(job.ended)[:10] if job.ended else ''}  {job.complaint}\n")
+            if any(job.outcome == "released" for job in earlier):
+                text.append(
+                    "This unit was released before: the new job will be a comeback of its last release.", style="bold"
+                )
+        self.query_one("#known", Static).update(text)
+
+    def action_take(self) -> None:
+        """Take the core in."""
+        values = {name: self.query_one(f"#{name}", Input).value for name, _, _ in FIELDS}
+
+        def question() -> Any:
+            from store import jobs
+
+            assert self.record is not None
+            return jobs.take_in(
+                self.record, model=values["model"], serial=values["serial"], tag=values["tag"] or None,
+                customer=values["customer"], application=values["application"], complaint=values["complaint"],
+                hours=values["hours"] or None,
+            ).tag  # fmt: skip
+
+        self.ask("take", question, self.dismiss)
+
+    def action_close(self) -> None:
+        """Back without a new job."""
+        self.dismiss(None)
