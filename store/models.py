@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import Any
 
 from sqlalchemy import Connection
 from sqlmodel import select
@@ -75,11 +77,44 @@ def by_id(conn: Connection, which: int) -> Model:
     return _model(found)
 
 
-def add(record: Record, number: str, kind: str, **values: object) -> Model:
-    """Enter a model; `values` are columns of its row. Raises Refused (taken, unknown kind)."""
-    with record.change("model entered", number) as change:
-        insert(change, number, kind, **values)
+def enter(record: Record, line: Mapping[str, str]) -> Model:
+    """Enter a model as typed, a text a column. Raises Refused."""
+    number, kind = line["model"], line.get("kind", "").strip()
+    with record.change("model entered", " ".join(number.split())) as change:
+        insert(change, number, kind, **checked(line))
     return find(record, number)
+
+
+class CellRefused(Refused):
+    """One cell of a model's line that is wrong; `column` names it."""
+
+    def __init__(self, column: str, why: str) -> None:
+        self.column = column
+        super().__init__(why)
+
+
+_TEXT = ("volts", "rotation", "viewed_from", "note")
+_WHOLE = ("teeth", "bars", "poles")
+_YES = {"": True, "yes": True, "true": True, "1": True, "no": False, "false": False, "0": False}
+
+
+def checked(line: Mapping[str, str]) -> dict[str, Any]:
+    """The columns of a model's row but number and kind, from text. Raises CellRefused."""
+    values: dict[str, Any] = {column: line.get(column, "").strip() for column in _TEXT}
+    for column in _WHOLE:
+        text = line.get(column, "").strip()
+        if text and (not text.isascii() or not text.isdigit() or not 0 < int(text[:6]) <= 1000):
+            raise CellRefused(column, f"{brief(text)!r} is not a whole number from 1 to 1000")
+        values[column] = int(text) if text else None
+    for column in ("may_turn", "may_undercut"):
+        text = line.get(column, "").strip().lower()
+        if text not in _YES:
+            raise CellRefused(column, f"{brief(text)!r} is neither yes nor no")
+        values[column] = _YES[text]
+    values["rotation"] = values["rotation"].lower()
+    if values["rotation"] not in {"", "cw", "ccw", "both"}:
+        raise CellRefused("rotation", f"{brief(values['rotation'])!r} is no rotation; write cw, ccw or both")
+    return values
 
 
 def insert(change: Change, number: str, kind: str, **values: object) -> int:

@@ -22,6 +22,7 @@ PLACES = {
     "bench": Place("tui.screens.bench", "Bench", "Bench", "open jobs, and taking in a core"),
     "job": Place("tui.screens.job", "JobScreen", "Job", "one job: sheet, notes, history", needs_more=True),
     "limits": Place("tui.screens.limits", "Limits", "Limits", "wear limits of a model, with their sources"),
+    "report": Place("tui.screens.report", "ReportPreview", "Report", "a report as it will print", needs_more=True),
     "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall"),
 }
 
