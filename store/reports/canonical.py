@@ -12,7 +12,7 @@ import json
 import types
 from collections import Counter
 from dataclasses import MISSING, fields, is_dataclass
-from functools import lru_cache
+from functools import cache
 from typing import Any, Union, get_args, get_origin, get_type_hints
 
 from store.errors import Refused
@@ -23,7 +23,7 @@ def to_json(report: Report) -> str:
     """The canonical text, ending in a newline. Raises Refused for text that is no Unicode and for NaN or infinity."""
     document = {**judged(report), "report": _out(report)}
     try:
-        text = json.dumps(document, ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+        text = json.dumps(document, ensure_ascii=False, allow_nan=False) + "\n"
         text.encode()
     except UnicodeEncodeError:
         raise Refused("the report holds text that is not Unicode") from None
@@ -84,10 +84,11 @@ def _verdict(one: Characteristic, result: Result) -> dict[str, Any]:
 
 
 def _out(value: Any) -> Any:
-    if is_dataclass(value):
-        return {field.name: _out(getattr(value, field.name)) for field in fields(value)}
-    if isinstance(value, tuple):
+    kind = type(value)
+    if kind is tuple:
         return [_out(item) for item in value]
+    if is_dataclass(kind):
+        return {name: _out(getattr(value, name)) for name in _hints(kind)[0]}
     return value
 
 
@@ -126,7 +127,7 @@ def _row(inner: tuple[Any, ...], value: Any, where: str) -> tuple[Any, ...]:
     return tuple(_in(kind, item, f"{where}[{n}]") for n, (kind, item) in enumerate(zip(inner, value, strict=True)))
 
 
-@lru_cache(maxsize=64)
+@cache
 def _hints(kind: Any) -> tuple[dict[str, Any], frozenset[str]]:
     """The type of each field, and the fields that have no default."""
     found = get_type_hints(kind)

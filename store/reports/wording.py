@@ -181,9 +181,7 @@ def _says(report: Report, one: Characteristic) -> tuple[tuple[str, str], ...]:
             lines.append((weight, f"{stage}: {result.because}"))
         lines += [("plain", f"{stage}: {remark}") for remark in result.remarks]
         many = len(result.readings) > 1
-        lines += [
-            ("plain", f"{stage}{', ' + r.position if many else ''}: {r.note}") for r in result.readings if r.note
-        ]
+        lines += [("plain", f"{stage}{', ' + r.position if many else ''}: {r.note}") for r in result.readings if r.note]
         if any(map(_looks_otherwise, result.readings)):
             typed = "; ".join(f"{r.position}: {r.typed.strip()}" if many else r.typed.strip() for r in result.readings)
             lines.append(("quiet", f"{stage}, as typed: {typed}"))

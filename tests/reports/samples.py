@@ -171,7 +171,9 @@ def brushes() -> tuple[Characteristic, ...]:
     length = limit("9.5 mm min", "mm", new="14", low="9.5", count=4)
     force = limit("17.8 to 26.7 N", "N", low="17.8", high="26.7", count=4)
     old = readings("mm", "10.1 9.8 10.4 9.2", gauge="C-4")
-    mended = replace(old[1], typed="9,8 mm", replaced=(Replaced("98", "jt", "2026-03-02T09:02:10Z", "decimal slipped"),))
+    mended = replace(
+        old[1], typed="9,8 mm", replaced=(Replaced("98", "jt", "2026-03-02T09:02:10Z", "decimal slipped"),)
+    )
     springs = tuple(
         Reading(str(n), typed, "number", value, "ozf", shown, "N", "", "S-1", f"2026-03-02T09:4{n}:00Z", "jt")
         for n, (typed, value, shown) in enumerate(
@@ -373,13 +375,17 @@ def long(rows: int = 60) -> Report:
     return replace(released(), characteristics=(*made, *running()))
 
 
-HOSTILE = "[/] #let x = 1 *b* _i_ $y$ `c` \\n </a> & %s {0} \x07\x00\x1b[31m \u202eabc \u05e9\u05dc\u05d5\u05dd \u0645\u0631\u062d\u0628\u0627 \U0001f527\U0001f44d\U0001f3fd \u4e2d\u6587 "
+HOSTILE = (
+    "[/] #let x = 1 *b* _i_ $y$ `c` \\n </a> & %s {0} \x07\x00\x1b[31m \u202eabc \u05e9\u05dc\u05d5\u05dd"
+    " \u0645\u0631\u062d\u0628\u0627 \U0001f527\U0001f44d\U0001f3fd \u4e2d\u6587 "
+)
 
 
 def hostile(text: str = HOSTILE, size: int = 10_000) -> Report:
     """A report with `text`, repeated up to `size` characters, in every field that takes text."""
     whole = (text * (size // len(text) + 1))[:size]
-    return _filled(released(), whole)
+    made: Report = _filled(released(), whole)
+    return made
 
 
 _KEPT = {"issued", "outcome", "paper", "verdict", "stage", "mark", "at_limit", "rule"}
