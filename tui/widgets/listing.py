@@ -48,12 +48,22 @@ class Listing(ScrollView, can_focus=True):
             self.listing, self.item = listing, item
             super().__init__()
 
+        @property
+        def control(self) -> Listing:
+            """The list that it came from."""
+            return self.listing
+
     class Moved(Message):
         """The cursor stands on another line."""
 
         def __init__(self, listing: Listing, item: Item) -> None:
             self.listing, self.item = listing, item
             super().__init__()
+
+        @property
+        def control(self) -> Listing:
+            """The list that it came from."""
+            return self.listing
 
     def __init__(self, columns: Sequence[Column], *, empty: str = "", id: str | None = None) -> None:  # noqa: A002
         super().__init__(id=id)

@@ -1,0 +1,5 @@
+"""`python -m tui` is `wearline`."""
+
+from tui.commands import main
+
+main()
