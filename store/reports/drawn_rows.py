@@ -28,7 +28,7 @@ _TOGETHER_MM = 90.0
 
 def group(pen: Pen, one: wording.Group, line_mm: float) -> dict[str, Any]:
     """The rows of a component under its name."""
-    name = pen.line(one.component, line_mm) if one.component.casefold() != "running tests" else ""
+    name = pen.line(brief(one.component, 80), line_mm) if one.component.casefold() != "running tests" else ""
     return {"component": name, "rows": [row(pen, r, line_mm) for r in one.rows]}
 
 

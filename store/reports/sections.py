@@ -11,7 +11,7 @@ Ledger = tuple[tuple[str, str], ...]
 PROMISE = (
     "The results relate to this unit only, as it was tested.",
     "Sizes predicted by the plan are not measurements. What the customer told is the customer's word, not the shop's.",
-    "This report may be copied only whole. Its figures stand exactly, with all they are made of, in the attached JSON.",
+    "This report may be copied only whole. Its figures stand exactly, with all they are made of, in its JSON.",
 )
 HOW_TO_READ = (
     'A value equal to its limit passes unless "equal fails" stands beside the limit. P is the probability of conformity as'
@@ -166,7 +166,7 @@ def gauges(report: Report) -> Table:
         for g in report.gauges
     )
     note = "U is the expanded uncertainty of the calibration, k its coverage factor."
-    return Table("Gauges", heads, (16, 24, 14, 14, 5, 13, 16), rows, note)
+    return Table("Gauges", heads, (13, 21, 14, 13, 4, 15, 20), rows, note)
 
 
 def decision(report: Report) -> tuple[str, ...]:
