@@ -54,7 +54,7 @@ def key(table: Table) -> str:
 def insertion(table: Table) -> str:
     """The INSERT statement of a whole row."""
     names = columns(table)
-    return f"INSERT INTO {name(table)}({','.join(names)}) VALUES({','.join('?' * len(names))})"  # noqa: S608
+    return f"INSERT INTO {name(table)}({','.join(names)}) VALUES({','.join('?' * len(names))})"
 
 
 @lru_cache(maxsize=64)

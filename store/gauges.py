@@ -133,7 +133,9 @@ def _gauge(r: Any, calibrations: tuple[Calibration, ...]) -> Gauge:
         repeatability=_number(r.repeatability),
         unit=r.unit,
     )
-    return Gauge(r.id, r.name, r.kind, r.unit, r.resolution, r.repeatability, r.note, bool(r.retired), calibrations, sure)
+    return Gauge(
+        r.id, r.name, r.kind, r.unit, r.resolution, r.repeatability, r.note, bool(r.retired), calibrations, sure
+    )
 
 
 def insert(

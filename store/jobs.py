@@ -8,7 +8,7 @@ from typing import Any
 
 from sqlalchemy import Connection
 
-from store import limit_sheets, models, people, shop, times
+from store import limit_sheets, models, people, times
 from store.changes import Change
 from store.errors import NotFound, Refused, brief
 from store.nearest import nearest

@@ -311,8 +311,6 @@ def jobs_at_hand(conn: Connection) -> Iterator[JobAtHand]:
         yield JobAtHand(*row)
 
 
-
-
 def _reading(r: Any, name: str) -> Reading:
     typed = Typed(r[4], Mark(r[5]), None if r[6] is None else Fraction(r[6]), r[7], r[8], r[9])
     return Reading(r[0], name, r[2], r[3], typed, r[10], r[11], r[12], r[13], r[14], r[15])

@@ -33,6 +33,7 @@ def _take(loading: Loading, lines: Iterator[Numbered]) -> int:
         else:
             known[name] = whole
             taken += 1
+    loading.record.forget(loading.change.conn, "gauges")
     return taken
 
 

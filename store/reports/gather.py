@@ -8,7 +8,7 @@ from math import sqrt
 
 from sqlalchemy import Connection
 
-from store import gauges, jobs, limit_sheets, models, readings, shop, sheets, verdicts
+from store import gauges, jobs, limit_sheets, models, readings, sheets, shop, verdicts
 from store.jobs import Job
 from store.readings import Reading
 from store.records import Record
@@ -68,7 +68,9 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         measured_last=moments[-1] if moments else None,
         ended=job.ended,
         revision=job.revision,
-        decision=None if sheet is None else contents.Decision(sheet.revision.decision.value, RULES[sheet.revision.decision]),
+        decision=None
+        if sheet is None
+        else contents.Decision(sheet.revision.decision.value, RULES[sheet.revision.decision]),
         characteristics=tuple(_characteristics(record, conn, job, found, left)),
         findings=_findings(conn, job),
         gauges=_gauges(record, conn, taken),
@@ -90,7 +92,15 @@ def _last_change(conn: Connection, job: Job, moments: Sequence[str]) -> str:
 def _unit(conn: Connection, job: Job) -> contents.Unit:
     model = models.by_id(conn, job.model_id)
     return contents.Unit(
-        model.number, job.serial, model.kind, model.volts, model.rotation, model.viewed_from, model.teeth, model.bars, model.poles
+        model.number,
+        job.serial,
+        model.kind,
+        model.volts,
+        model.rotation,
+        model.viewed_from,
+        model.teeth,
+        model.bars,
+        model.poles,
     )
 
 
@@ -270,4 +280,3 @@ def sizes(taken: Iterable[Reading | None], unit: str) -> list[Fraction]:
         and r.typed.value is not None
         and quantities.unit(unit).quantity is quantities.unit(r.typed.unit).quantity
     ]
-

@@ -75,7 +75,9 @@ def wear_rule(
     )
 
 
-def _one_sided(limit: Fraction, new: Fraction | None, best: Fraction | None, *, falls: bool) -> tuple[Fraction, Fraction]:
+def _one_sided(
+    limit: Fraction, new: Fraction | None, best: Fraction | None, *, falls: bool
+) -> tuple[Fraction, Fraction]:
     """The sizes at 0 and 1. Without a new size on the good side the best reading stands for it, else a tenth of the limit."""
     good = [v for v in (new, best) if v is not None and (v > limit if falls else v < limit)]
     start = new if new in good else good[0] if good else None

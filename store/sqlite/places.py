@@ -38,7 +38,7 @@ def _mounts() -> str:
     if proc.exists():
         return proc.read_text(encoding="utf-8", errors="replace")
     if sys.platform == "darwin":
-        listed = subprocess.run(["/sbin/mount"], capture_output=True, text=True, check=False).stdout  # noqa: S603
+        listed = subprocess.run(["/sbin/mount"], capture_output=True, text=True, check=False).stdout
         lines = []
         for line in listed.splitlines():
             device, _, rest = line.partition(" on ")

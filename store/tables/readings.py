@@ -48,7 +48,7 @@ class JudgementRow(SQLModel, table=True):
     """
 
     __tablename__ = "judgement"
-    __table_args__ = {"sqlite_with_rowid": False}  # noqa: RUF012  SQLAlchemy's own way; one page a write, not two
+    __table_args__ = {"sqlite_with_rowid": False}
 
     job_id: int = Field(foreign_key="job.id", primary_key=True)
     stage: str = Field(primary_key=True)
