@@ -45,8 +45,8 @@ class SheetRow:
 
     @property
     def is_expected(self) -> bool:
-        """Whether the limit sheet asks for this at this stage, or somebody has measured it."""
-        return self.limit is not None or self.judged is not None
+        """Whether the limit sheet asks for this at this stage, or somebody has measured it (computed ones need a limit)."""
+        return self.limit is not None or (self.judged is not None and not self.characteristic.derive)
 
 
 @dataclass(frozen=True, slots=True)

@@ -200,3 +200,16 @@ def _plausible(expected: Expected) -> tuple[Fraction, Fraction] | None:
     if not known:
         return None
     return min(known) / 2, max(known) * 2
+
+
+def two_units_agree(one: Typed, other: Typed) -> bool:
+    """Whether a size that is given in two units is the same in both, within one unit of the last digit of either.
+
+    Printed manuals get it wrong. Raises Refused where the quantities differ, ValueError for marks.
+    """
+    if one.value is None or other.value is None:
+        raise ValueError("a size is wanted")
+    here = quantities.convert(other.value, other.unit, one.unit)
+    last_one = Fraction(1, 10**one.places)
+    last_other = Fraction(1, 10**other.places) * quantities.scale(other.unit, one.unit)
+    return abs(here - one.value) < max(last_one, last_other)

@@ -43,6 +43,7 @@ class JobScreen(Standing):
         Binding("f5", "next_pane", "notes ...", tooltip="go on to the next pane: sheet, plan, parts, notes, history"),
         Binding("f6", "report", "report", tooltip="the tolerance report as it will print"),
         Binding("f7", "row_limit", "limit", tooltip="enter a limit for the row under the cursor"),
+        Binding("f8", "all_rows", "all rows", tooltip="every characteristic of this machine, or only those the sheet asks for"),
         Binding("ctrl+z", "undo", "undo", tooltip="correct the last reading"),
         Binding("escape", "back", "bench"),
     ]
@@ -57,6 +58,7 @@ class JobScreen(Standing):
         self.waiting = 0
         self.version: Any = None
         self.pane = "sheet"
+        self.every_row = False
 
     def body(self) -> ComposeResult:
         """The panes, one in front."""
@@ -104,7 +106,7 @@ class JobScreen(Standing):
         same = self.sheet is not None and self.sheet.stage == stage
         at = widget.keying.at if same else None
         aside, last = widget.keying.aside, widget.keying.last if same else []
-        self.sheet = sheet
+        self.sheet = sheet = job_faces.asked(sheet, every=self.every_row)
         widget.show(job_faces.rows(sheet), job_faces.faces(sheet), at)
         widget.keying.aside, widget.keying.last = aside, last
         self.say_where()
@@ -206,6 +208,13 @@ class JobScreen(Standing):
         """As found or as left."""
         self.query_one(ReadingSheet).close_buffer()
         self.stage = OTHER[self.stage]
+        self.fill()
+
+    def action_all_rows(self) -> None:
+        """Every row, or only those that are asked for; the cursor begins anew."""
+        self.query_one(ReadingSheet).close_buffer()
+        self.every_row = not self.every_row
+        self.sheet = None
         self.fill()
 
     def action_not_measured(self) -> None:

@@ -30,6 +30,13 @@ def rows(sheet: Any) -> list[Row]:
     return made
 
 
+def asked(sheet: Any, *, every: bool) -> Any:
+    """The sheet with only the rows that it asks for or that have readings; all of them with `every` or without limits."""
+    if every or not any(row.limit for row in sheet.rows):
+        return sheet
+    return replace(sheet, rows=tuple(row for row in sheet.rows if row.is_expected))
+
+
 def shown(reading: Any) -> str:
     """A reading in its cell: as typed; a mark by its word."""
     mark = reading.typed.mark.value
