@@ -53,7 +53,8 @@ def wear_rule(
     elif low is not None:
         zero, one = _one_sided(low, limit.new, max(values, default=None), falls=True)
     elif high is not None:
-        zero, one = _one_sided(high, limit.new, min(values, default=None), falls=False)
+        start = limit.new if limit.new is not None or high <= 0 else Fraction(0)
+        zero, one = _one_sided(high, start, min(values, default=None), falls=False)
     else:
         return None
 

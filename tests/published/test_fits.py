@@ -72,11 +72,11 @@ async def test_the_same_on_the_screen(record: Record, worn: str) -> None:
     async with opened(record.path, (120, 40)) as pilot:
         pilot.app.go("job", worn)
         await settled(pilot)
-        lines = {line[:22].strip(): line for line in text_of(pilot).splitlines()}
+        lines = {line[:26].strip(): line for line in text_of(pilot).splitlines()}
         assert " in " in lines["centre bushing bore"]
-        assert " in " in lines["centre journal diame…"]
-        assert "0.0110 in" in lines["centre running clear…"]
-        assert "OUT" in lines["centre running clear…"]
+        assert " in " in lines["centre journal diameter"]
+        assert "0.0110 in" in lines["centre running clearance"]
+        assert "OUT" in lines["centre running clearance"]
 
 
 def _clearances(bores: list[str], journals: list[str], unit: str) -> tuple[Fraction, Fraction]:

@@ -24,6 +24,7 @@ from tui.widgets.keying import KEYS, Asking, Cell, Keying, Row, State, Submitted
 
 NAME, LIMIT, CELL, VERDICT = 22, 12, 8, 14
 RULE_FROM, RULE = 110, 28
+WIDE_NAME, WIDE_LIMIT = 34, 20
 VERDICT_WORDS = {"out": "OUT", "in doubt": "in doubt ?", "not comparable": "not comparable"}
 TONES = {"out": "loud", "in doubt": "doubt", "not comparable": "doubt"}
 
@@ -136,7 +137,7 @@ class ReadingSheet(ScrollView, can_focus=True):
         if not 0 <= line < len(self.lines) or self.lines[line][1] < 0:
             return
         row = self.lines[line][1]
-        column = max(0, (offset.x - NAME - LIMIT) // CELL) + self._window(row)[0]
+        column = max(0, (offset.x - sum(self.left)) // CELL) + self._window(row)[0]
         self._settle(self.keying.go(row, column))
 
     def _settle(self, made: Sequence[Submitted]) -> None:
@@ -170,10 +171,19 @@ class ReadingSheet(ScrollView, can_focus=True):
         """The cursor stays in sight when the terminal changes."""
         self._follow()
 
+    @property
+    def left(self) -> tuple[int, int]:
+        """The widths of name and limit: wider where the wear rule stands beside the rows and there is room yet."""
+        spare = self.size.width - NAME - LIMIT - 4 * CELL - VERDICT - RULE - 2
+        if spare <= 0:
+            return NAME, LIMIT
+        limit = min(WIDE_LIMIT - LIMIT, spare // 2)
+        return NAME + min(WIDE_NAME - NAME, spare - limit), LIMIT + limit
+
     def cells_shown(self) -> int:
         """How many readings stand side by side at this width."""
         width = self.size.width
-        spare = width - NAME - LIMIT - VERDICT - (RULE + 2 if width >= RULE_FROM else 0)
+        spare = width - sum(self.left) - VERDICT - (RULE + 2 if width >= RULE_FROM else 0)
         return max(1, spare // CELL)
 
     def _window(self, row: int) -> tuple[int, int]:
@@ -207,15 +217,16 @@ class ReadingSheet(ScrollView, can_focus=True):
         quiet = ground + Style(color=tones["quiet"])
         is_here = self.keying.at is not None and self.keying.at[0] == row
         name = ground + Style(color=tones["brass"], bold=True) if is_here else ground if keys.is_asked else quiet
-        segments = [Segment(_fit(face.label, NAME - 1) + " ", name), Segment(_fit(face.limit, LIMIT - 1) + " ", quiet)]
+        wide, limit = self.left
+        segments = [Segment(_fit(face.label, wide - 1) + " ", name), Segment(_fit(face.limit, limit - 1) + " ", quiet)]
         begin, end = self._window(row)
         decimals = max((_decimals(c.text) for c in keys.cells), default=0)
         for column in range(begin, end):
             segments += self._cell(keys.cells[column], row, column, decimals, ground, tones)
         if face.derived:
             segments.append(Segment(_fit(f" {face.derived}", CELL * 2), ground))
-        used = NAME + LIMIT + (end - begin) * CELL + (CELL * 2 if face.derived else 0)
-        gap = NAME + LIMIT + self.cells_shown() * CELL - used
+        used = (end - begin) * CELL + (CELL * 2 if face.derived else 0)
+        gap = self.cells_shown() * CELL - used
         segments.append(Segment(" " * max(0, gap), ground))
         more = "›" if end < len(keys.cells) else " "
         verdict = VERDICT_WORDS.get(face.verdict, face.verdict)
