@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections import Counter
 from dataclasses import dataclass
 from typing import Any
 
@@ -11,9 +10,11 @@ from sqlalchemy import Connection
 from store import limit_sheets, models, people, times
 from store.changes import Change
 from store.errors import NotFound, Refused, brief
+from store.job_lines import JobLine
 from store.nearest import nearest
 from store.records import Record
 from store.rules.numbers import comparing_key
+from store.sqlite.engine import driver
 from store.tables.jobs import JobRow
 
 OUTCOMES = ("open", "released", "scrapped", "returned")
@@ -60,24 +61,6 @@ class Job:
         return self.earlier is not None
 
 
-@dataclass(frozen=True, slots=True)
-class JobLine:
-    """A job as a list shows it: `stands` is taken in, stripped, on rework, to inspect, released, scrapped or returned."""
-
-    tag: str
-    model: str
-    serial: str
-    customer: str
-    complaint: str
-    taken_in: str
-    ended: str | None
-    stands: str
-    out: int
-    in_doubt: int
-    earlier: str | None
-    next: str
-
-
 _JOB = """
 SELECT j.id, j.tag, m.number, m.kind, u.serial, u.id, m.id, j.revision_id, r.number, j.customer, j.application, j.hours,
  j.starts, j.complaint, j.taken_in, j.by, j.assembled_by, j.outcome, j.ended, j.ended_by, e.tag, j.comeback_outcome,
@@ -85,30 +68,6 @@ SELECT j.id, j.tag, m.number, m.kind, u.serial, u.id, m.id, j.revision_id, r.num
 FROM job j JOIN unit u ON u.id = j.unit_id JOIN model m ON m.id = u.model_id
 LEFT JOIN revision r ON r.id = j.revision_id LEFT JOIN job e ON e.id = j.earlier_id
 """
-
-# Counts of judgements decide where an open job stands; a release ends it.
-_LINES = """
-SELECT j.tag, m.number, u.serial, j.customer, j.complaint, j.taken_in, j.ended, j.outcome, e.tag,
- (SELECT count(*) FROM judgement g WHERE g.job_id = j.id AND g.stage = 'as-found'),
- (SELECT count(*) FROM judgement g WHERE g.job_id = j.id AND g.stage = 'as-left' AND g.verdict <> 'not measured'),
- (SELECT count(*) FROM judgement g WHERE g.job_id = j.id AND g.verdict = 'out'
-   AND g.stage = CASE WHEN EXISTS(SELECT 1 FROM judgement h WHERE h.job_id = j.id AND h.stage = 'as-left')
-                 THEN 'as-left' ELSE 'as-found' END),
- (SELECT count(*) FROM judgement g WHERE g.job_id = j.id AND g.verdict = 'in doubt'
-   AND g.stage = CASE WHEN EXISTS(SELECT 1 FROM judgement h WHERE h.job_id = j.id AND h.stage = 'as-left')
-                 THEN 'as-left' ELSE 'as-found' END),
- (SELECT count(*) FROM wear_limit l WHERE l.revision_id = j.revision_id AND l.stage <> 'as-found'
-   AND NOT EXISTS(SELECT 1 FROM judgement g WHERE g.job_id = j.id AND g.stage = 'as-left'
-                  AND g.characteristic_id = l.characteristic_id AND g.verdict <> 'not measured'))
-FROM job j JOIN unit u ON u.id = j.unit_id JOIN model m ON m.id = u.model_id LEFT JOIN job e ON e.id = j.earlier_id
-"""
-
-_NEXT = {
-    "taken in": "strip and measure",
-    "stripped": "plan the rework",
-    "on rework": "measure as left",
-    "to inspect": "inspect and release",
-}
 
 
 def find(record: Record, tag: str, conn: Connection | None = None) -> Job:
@@ -136,46 +95,21 @@ def listing(
     """
     if outcome is not None and outcome not in OUTCOMES:
         raise Refused(f"{brief(outcome)!r} is no outcome; one of {', '.join(OUTCOMES)}")
-    where, values = [], []
-    if outcome is not None:
-        where.append("j.outcome = ?")
-        values.append(outcome)
-    if model is not None:
-        where.append("m.id = ?")
-        values.append(str(models.find(record, model).id))
-    if before is not None:
-        where.append("j.id < ?")
-        values.append(str(find(record, before).id))
-    for word in search.split()[:8]:
-        like = "%" + word.replace("\\", "\\\\").replace("%", "\\%").replace("_", "\\_") + "%"
-        key = comparing_key(word)
-        where.append(
-            "(j.tag LIKE ? ESCAPE '\\' OR u.serial LIKE ? ESCAPE '\\' OR m.number LIKE ? ESCAPE '\\' "
-            "OR j.customer LIKE ? ESCAPE '\\' OR u.key = ? OR m.key = ? OR j.key = ?)"
-        )
-        values += [like, like, like, like, key, key, key]
-    sql = _LINES + (f"WHERE {' AND '.join(where)} " if where else "") + "ORDER BY j.id DESC LIMIT ?"
     with record.read() as conn:
-        rows = conn.exec_driver_sql(sql, (*values, most)).all()
-    return tuple(map(_line, rows))
-
-
-def _line(r: Any) -> JobLine:
-    tag, model, serial, customer, complaint, taken_in, ended, outcome, earlier, found, left, out, doubt, missing = r
-    stands = outcome
-    if outcome == "open":
-        stands = "taken in" if not found and not left else "stripped"
-        if left:
-            stands = "on rework" if missing else "to inspect"
-    return JobLine(
-        tag, model, serial, customer, complaint, taken_in, ended, stands, out, doubt, earlier, _NEXT.get(stands, "")
-    )
+        return job_lines.search(
+            driver(conn),
+            outcome=outcome,
+            model_id=None if model is None else models.find(record, model, conn).id,
+            words=search,
+            most=most,
+            before_id=None if before is None else find(record, before, conn).id,
+        )
 
 
 def counts(record: Record) -> dict[str, int]:
     """How many open jobs stand where, in the order of the work."""
-    found = Counter(line.stands for line in listing(record, most=100_000))
-    return {stands: found.get(stands, 0) for stands in _NEXT}
+    with record.read() as conn:
+        return job_lines.counts(job_lines.search(driver(conn), most=100_000))
 
 
 def of_unit(record: Record, model: str, serial: str) -> tuple[Job, ...]:

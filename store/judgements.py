@@ -89,7 +89,7 @@ def refresh(record: Record, conn: Connection, job: Judgeable, stage: str, names:
     """Judge these characteristics anew, and those derived from them, inside a write transaction."""
     known = catalogue(record, conn)
     sheet = _sheet(record, conn, job)
-    wanted = _with_derived(known, names, job.kind)
+    wanted = _with_derived(known, names, job.kind, sheet, stage)
     readings = _measured(record, conn, job.id, stage, known, wanted)
     return tuple(_put(conn, job.id, one, stage, sheet, readings) for one in wanted if _has_readings(one, readings))
 
@@ -137,14 +137,28 @@ def stored(
     return (job_id, stage, one.id, limit.id if limit else None, judgement.verdict.value, size, text)
 
 
-def _with_derived(known: Catalogue, names: Iterable[str], kind: str) -> list[Characteristic]:
+def _with_derived(
+    known: Catalogue, names: Iterable[str], kind: str, sheet: LimitSheet | None, stage: str
+) -> list[Characteristic]:
+    """The characteristics of these names, and the derived ones that the sheet limits."""
     wanted: dict[str, Characteristic] = {}
     for name in names:
         wanted[name] = known.by_name[name]
         for made in known.derived_from.get(name, ()):
-            if kind in made.machines:
+            if kind in made.machines and sheet is not None and sheet.at(made.name, stage) is not None:
                 wanted[made.name] = made
     return list(wanted.values())
+
+
+def unlimited(
+    record: Record, conn: Connection, job: Judgeable, stage: str, wanted: Sequence[Characteristic]
+) -> tuple[Judged, ...]:
+    """Derived characteristics that no limit asks for, from the readings as they stand; such are not kept."""
+    known = catalogue(record, conn)
+    readings = _measured(record, conn, job.id, stage, known, wanted) if wanted else {}
+    return tuple(
+        Judged(one, stage, None, judged(one, None, readings)) for one in wanted if _has_readings(one, readings)
+    )
 
 
 def _has_readings(one: Characteristic, readings: dict[str, list[Measured]]) -> bool:

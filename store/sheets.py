@@ -87,6 +87,8 @@ def sheet(record: Record, tag: str, stage: str, conn: Connection | None = None) 
         else:
             elsewhere.setdefault(reading.characteristic, []).append(reading)
     verdicts = {j.characteristic.name: j for j in judgements.of_job(record, job, stage, conn)}
+    unasked = [c for c in catalogue(record, conn).of(job.kind) if c.derive and c.name not in verdicts]
+    verdicts |= {j.characteristic.name: j for j in judgements.unlimited(record, conn, job, stage, unasked)}
     rows = []
     for one in catalogue(record, conn).of(job.kind):
         if stage not in one.stages:

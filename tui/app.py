@@ -71,7 +71,12 @@ class Wearline(App[None]):
         self.run_worker(self._open, thread=True, group="open", exit_on_error=False)
 
     def _open(self) -> None:
+        """The open jobs first, by the driver alone; then the store is imported and the record opened in full."""
+        from store import job_lines
         from store.errors import WearlineError
+
+        if (lines := job_lines.first_look(self.path)) is not None:
+            self.call_from_thread(self.tell_screens, "first_look", lines)
 
         try:
             from store import records, shop

@@ -14,32 +14,7 @@ from typing import Any
 from sqlalchemy import Connection, Engine, create_engine, event
 from sqlalchemy.pool import QueuePool
 
-BUSY_SECONDS = 30.0
-_PRAGMAS = (
-    "PRAGMA foreign_keys=ON",
-    "PRAGMA recursive_triggers=ON",
-    "PRAGMA synchronous=FULL",
-    "PRAGMA cache_size=-32000",
-    "PRAGMA wal_autocheckpoint=4000",
-    "PRAGMA temp_store=MEMORY",
-)
-
-
-def connect(path: Path, *, read_only: bool = False) -> sqlite3.Connection:
-    """A raw connection with the record's pragmas, in autocommit (isolation_level None: BEGIN is ours).
-
-    Raises sqlite3.Error.
-    """
-    if read_only:
-        raw = sqlite3.connect(
-            f"{path.absolute().as_uri()}?mode=ro", uri=True, timeout=BUSY_SECONDS, isolation_level=None
-        )
-    else:
-        raw = sqlite3.connect(path, timeout=BUSY_SECONDS, isolation_level=None, check_same_thread=False)
-        raw.execute("PRAGMA journal_mode=WAL")
-    for pragma in _PRAGMAS:
-        raw.execute(pragma)
-    return raw
+from store.sqlite.connections import BUSY_SECONDS, connect
 
 
 def engine(path: Path) -> Engine:
@@ -62,3 +37,6 @@ def driver(connection: Connection) -> sqlite3.Connection:
 def rows(connection: Connection, sql: str, values: Sequence[Any] = ()) -> list[Any]:
     """What a statement gives, without the toll of a SQLAlchemy result: a tuple a row."""
     return driver(connection).execute(sql, values).fetchall()
+
+
+__all__ = ["BUSY_SECONDS", "connect", "driver", "engine", "rows"]

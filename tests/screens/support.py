@@ -57,12 +57,20 @@ def text_of(pilot: Any) -> str:
 class Terminal:
     """The program in a real pseudo-terminal; `screen` is what a person would see."""
 
-    def __init__(self, arguments: list[str], size: tuple[int, int] = (80, 24), env: dict[str, str] | None = None) -> None:
+    def __init__(
+        self, arguments: list[str], size: tuple[int, int] = (80, 24), env: dict[str, str] | None = None
+    ) -> None:
         self.screen = pyte.Screen(*size)
         self.stream = pyte.ByteStream(self.screen)
         self.pid, self.fd = pty.fork()
         if self.pid == 0:
-            wanted = {**os.environ, "TERM": "xterm-256color", "COLORTERM": "", "TEXTUAL_ANIMATIONS": "none", **(env or {})}
+            wanted = {
+                **os.environ,
+                "TERM": "xterm-256color",
+                "COLORTERM": "",
+                "TEXTUAL_ANIMATIONS": "none",
+                **(env or {}),
+            }
             os.execve(sys.executable, [sys.executable, "-m", "tui", *arguments], wanted)
         fcntl.ioctl(self.fd, termios.TIOCSWINSZ, struct.pack("HHHH", size[1], size[0], 0, 0))
 
@@ -85,7 +93,7 @@ class Terminal:
         end = time.monotonic() + seconds
         while shown not in self.text:
             assert time.monotonic() < end, f"never saw {shown!r} on\n{self.text}"
-            self.read(0.05)
+            self.read(0.005)
 
     def send(self, data: bytes) -> None:
         """Send bytes as a keyboard would, all in one write where the terminal takes them."""

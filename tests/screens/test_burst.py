@@ -32,7 +32,11 @@ def values(count: int, seed: int) -> list[str]:
     for n in range(count):
         number = f"{draw.randint(1, 99)}.{draw.randint(0, 9999):04d}"
         unit = "mV" if n < BARS else "uohm"
-        made.append(draw.choice([number, f"000{number}", f"+{number}", number.replace(".", ","), f"{number}{unit}", f"{number} {unit}"]))
+        made.append(
+            draw.choice(
+                [number, f"000{number}", f"+{number}", number.replace(".", ","), f"{number}{unit}", f"{number} {unit}"]
+            )
+        )
     return made
 
 

@@ -22,7 +22,9 @@ ROWS = ("commutator-diameter", "undercut-depth", "brush-length", "brush-side-cle
 
 def asked_job(record: Record, folder: Path) -> str:
     """A job with five rows of four readings."""
-    lines = [f"KS-1,{name},{unit},0.1,4,own sheet" for name, unit in zip(ROWS, ("mm", "mm", "mm", "mm", "N"), strict=True)]
+    lines = [
+        f"KS-1,{name},{unit},0.1,4,own sheet" for name, unit in zip(ROWS, ("mm", "mm", "mm", "mm", "N"), strict=True)
+    ]
     (folder / "models.csv").write_text("model,kind\nKS-1,starter\n")
     (folder / "limits.csv").write_text("model,characteristic,unit,low,count,source\n" + "\n".join(lines) + "\n")
     files.load(record, [folder / "models.csv", folder / "limits.csv"])

@@ -7,7 +7,7 @@ from pathlib import Path
 
 import pytest
 
-from store import judgements, jobs, people, readings, sheets
+from store import judgements, jobs, limit_sheets, people, readings, sheets
 from store.errors import NotFound, ReadingRefused, Refused
 from store.readings import Accepted, Entry
 from store.records import Record
@@ -23,8 +23,14 @@ def tag(record: Record, tmp_path: Path) -> str:
 def test_a_reading_is_kept_as_typed_and_judged(record: Record, tag: str) -> None:
     """What was typed stands beside its exact value; the verdict comes back with it."""
     accepted = readings.add(record, tag, "as-found", "commutator-runout", " .02 ")
-    assert (accepted.reading.typed.text, str(accepted.reading.typed.value), accepted.reading.typed.unit) == (".02", "1/50", "mm")
-    assert [(j.characteristic.name, j.judgement.verdict.value) for j in accepted.judged] == [("commutator-runout", "in")]
+    assert (accepted.reading.typed.text, str(accepted.reading.typed.value), accepted.reading.typed.unit) == (
+        ".02",
+        "1/50",
+        "mm",
+    )
+    assert [(j.characteristic.name, j.judgement.verdict.value) for j in accepted.judged] == [
+        ("commutator-runout", "in")
+    ]
 
 
 def test_readings_go_to_the_next_empty_position(record: Record, tag: str) -> None:
@@ -33,7 +39,10 @@ def test_readings_go_to_the_next_empty_position(record: Record, tag: str) -> Non
         last = readings.add(record, tag, "as-found", "brush-length", text)
     assert [r.position for r in readings.of_job(record, tag)] == ["1", "2", "3", "4"]
     assert last.judged[0].judgement.verdict.value == "out"
-    assert last.judged[0].because == "brush 4 is 9.2 mm, 0.3 under the 9.5 minimum; judged as read, the gauge's uncertainty is not known"
+    assert (
+        last.judged[0].because
+        == "brush 4 is 9.2 mm, 0.3 under the 9.5 minimum; judged as read, the gauge's uncertainty is not known"
+    )
     with pytest.raises(Refused, match="has all its 4 readings"):
         readings.add(record, tag, "as-found", "brush-length", "11")
 
@@ -44,7 +53,10 @@ def test_a_correction_adds_and_erases_nothing(record: Record, tag: str) -> None:
     fixed = readings.add(record, tag, "as-found", "commutator-runout", "0.05", why="decimal slipped")
     assert [r.typed.text for r in readings.of_job(record, tag)] == ["0.05"]
     both = readings.of_job(record, tag, corrected=True)
-    assert [(r.typed.text, r.corrects, r.why) for r in both] == [("0.5", None, ""), ("0.05", both[0].id, "decimal slipped")]
+    assert [(r.typed.text, r.corrects, r.why) for r in both] == [
+        ("0.5", None, ""),
+        ("0.05", both[0].id, "decimal slipped"),
+    ]
     assert fixed.judged[0].judgement.verdict.value == "in"
 
 
@@ -57,7 +69,10 @@ def test_a_second_reading_at_a_place_needs_a_reason(record: Record, tag: str) ->
         readings.add(record, tag, "as-found", "brush-length", "11.4", position="2", why="wrong")
 
 
-@pytest.mark.parametrize("statement", ["UPDATE reading SET value = '99'", "DELETE FROM reading", "DELETE FROM audit", "UPDATE audit SET by = 'XX'"])
+@pytest.mark.parametrize(
+    "statement",
+    ["UPDATE reading SET value = '99'", "DELETE FROM reading", "DELETE FROM audit", "UPDATE audit SET by = 'XX'"],
+)
 def test_the_shell_cannot_change_what_was_accepted(record: Record, tag: str, statement: str) -> None:
     """Triggers refuse UPDATE and DELETE even on a bare sqlite3 connection."""
     readings.add(record, tag, "as-found", "commutator-runout", "0.02")
@@ -114,10 +129,19 @@ def test_a_bar_beyond_the_model_is_refused(record: Record, tag: str) -> None:
 def test_derived_characteristics_follow_their_parts(record: Record, tag: str) -> None:
     """A bore and a journal make a clearance, judged in the same transaction."""
     readings.add(record, tag, "as-found", "commutator-end-bore", "16.05 mm")
-    accepted = readings.add(record, tag, "as-found", "commutator-end-journal", "15.95 mm")
+    readings.add(record, tag, "as-found", "commutator-end-journal", "15.95 mm")
+    row = sheets.sheet(record, tag, "as-found").row("commutator-end-clearance")
+    assert row.judged is not None
+    assert (str(row.judged.judgement.value), row.verdict.value) == ("1/10", "no limit")
+    limit = limit_sheets.LimitEntry("commutator-end-clearance", "own sheet", "mm", high="0.08")
+    limit_sheets.enter(record, "KS-100", [limit])
+    jobs.move_to_revision(record, tag)
+    accepted = readings.add(record, tag, "as-found", "commutator-end-journal", "15.9 mm", why="read again")
     derived = {j.characteristic.name: j.judgement for j in accepted.judged}
-    assert str(derived["commutator-end-clearance"].value) == "1/10"
-    assert derived["commutator-end-clearance"].verdict.value == "no limit"
+    assert (str(derived["commutator-end-clearance"].value), derived["commutator-end-clearance"].verdict.value) == (
+        "3/20",
+        "out",
+    )
 
 
 def test_a_queue_is_written_whole_and_its_refusals_answered(record: Record, tag: str) -> None:

@@ -16,7 +16,9 @@ if TYPE_CHECKING:
 @click.command(epilog="Example: wearline report 1042 -o report-1042.pdf")
 @click.argument("tag")
 @click.option("-o", "out", metavar="FILE", help="Ending .pdf, .txt or .json; default: text on the terminal.")
-@click.option("--print", "queue", is_flag=False, flag_value="", default=None, metavar="[QUEUE]", help="Hand the PDF to a printer.")
+@click.option(
+    "--print", "queue", is_flag=False, flag_value="", default=None, metavar="[QUEUE]", help="Hand the PDF to a printer."
+)
 @on_record
 def report(record: Record, tag: str, out: str | None, queue: str | None) -> None:
     """The tolerance report of job TAG: a draft until the job is released."""

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from datetime import UTC, datetime
 from typing import Any, ClassVar
 
 from rich.text import Text
@@ -61,6 +62,13 @@ class Bench(Standing):
         super().on_mount()
         self.query_one("#search").focus()
         self.set_interval(LOOK_AGAIN_SECONDS, self.look_again)
+
+    def first_look(self, lines: Any) -> None:
+        """The open jobs, while the rest of the record is still being opened."""
+        from store import job_lines
+
+        now = datetime.now(UTC).isoformat()
+        self._show((lines, job_lines.counts(lines), now))
 
     def record_opened(self) -> None:
         """Fill the list; ask who works here where people are entered and nobody is said."""

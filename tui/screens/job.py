@@ -43,7 +43,12 @@ class JobScreen(Standing):
         Binding("f5", "next_pane", "notes ...", tooltip="go on to the next pane: sheet, plan, parts, notes, history"),
         Binding("f6", "report", "report", tooltip="the tolerance report as it will print"),
         Binding("f7", "row_limit", "limit", tooltip="enter a limit for the row under the cursor"),
-        Binding("f8", "all_rows", "all rows", tooltip="every characteristic of this machine, or only those the sheet asks for"),
+        Binding(
+            "f8",
+            "all_rows",
+            "all rows",
+            tooltip="every characteristic of this machine, or only those the sheet asks for",
+        ),
         Binding("ctrl+z", "undo", "undo", tooltip="correct the last reading"),
         Binding("escape", "back", "bench"),
     ]
