@@ -46,14 +46,9 @@ def canonical(value: Any) -> str:
     return _encode(value)
 
 
-def row_bytes(row: Sequence[Any]) -> bytes:
-    """The canonical bytes of one row, ended by a line feed, as digests take them in."""
-    return (_encode(list(row)) + "\n").encode()
-
-
 def digest(rows: Sequence[Sequence[Any]]) -> str:
-    """SHA-256 over the rows in the order given."""
-    return hashlib.sha256(b"".join(map(row_bytes, rows))).hexdigest()
+    """SHA-256 over the canonical text of the rows in the order given, a list a row."""
+    return hashlib.sha256(_encode(rows if isinstance(rows, list) else list(rows)).encode()).hexdigest()
 
 
 def entry_hash(previous: str, at: str, by: str, action: str, subject: str, changes: str) -> str:

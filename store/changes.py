@@ -10,7 +10,6 @@ chain. `load` writes rows by the thousand under one entry with a digest for ever
 
 from __future__ import annotations
 
-import hashlib
 from collections.abc import Iterable, Iterator, Sequence
 from functools import lru_cache
 from itertools import islice
@@ -133,7 +132,7 @@ class Change:
         for run in _runs(rows, audit.RUN):
             whole = [(next_id + n, *row[1:]) for n, row in enumerate(run)]
             raw.executemany(sql, whole)
-            runs.append(hashlib.sha256(b"".join(map(audit.row_bytes, whole))).hexdigest())
+            runs.append(audit.digest(whole))
             next_id += len(whole)
             total += len(whole)
         if total:
