@@ -20,9 +20,11 @@ LONGEST = 60
 MOST_UNREADABLE = 3
 UNREADABLE = "?"
 _ALIKE = str.maketrans("OISBZ", "01582")
+_ALIKE_BYTES = bytes.maketrans(b"OISBZ", b"01582")
 FOLDED_ALPHABET = "0123456789ACDEFGHJKLMNPQRTUVWXY"
-_PLAIN = {n: chr(n).upper() if chr(n).isalnum() else None for n in range(128)}
-_ASKED = {**_PLAIN, ord(UNREADABLE): UNREADABLE}
+_UPPER = bytes(range(256)).upper()
+_SEPARATORS = bytes(n for n in range(128) if not chr(n).isalnum())
+_SEPARATORS_ASKED = _SEPARATORS.replace(UNREADABLE.encode(), b"")
 
 
 class How(StrEnum):
@@ -44,7 +46,11 @@ def comparing_key(number: str) -> str:
 
 def folded_key(key: str) -> str:
     """A comparing key with look-alikes made one (O/0, I/1, S/5, B/8, Z/2), leading zeros off again."""
-    return _unpadded(key.translate(_ALIKE))
+    if key.isascii():  # by bytes: three times as fast, and lists hold a million
+        key = key.encode().translate(_ALIKE_BYTES).decode()
+    else:
+        key = key.translate(_ALIKE)
+    return key.lstrip("0") or key[:1]
 
 
 @dataclass(frozen=True, slots=True)
@@ -133,7 +139,7 @@ def readable_keys(raw: str) -> frozenset[str]:
 def _characters(number: str, *, asking: bool = False) -> str:
     """Letters and figures in upper case. Compatibility forms (full width, ligatures) are made plain."""
     if number.isascii():
-        return number.translate(_ASKED if asking else _PLAIN)
+        return number.encode().translate(_UPPER, _SEPARATORS_ASKED if asking else _SEPARATORS).decode()
     before, text = "", number
     while text != before:
         before = text

@@ -95,7 +95,7 @@ class PartAttributeRow(SQLModel, table=True):
 
 
 class FittedRow(SQLModel, table=True):
-    """A part fitted on a job: the number as printed on it, and the number of the lists that it is, where one is known.
+    """A part fitted on a job: the number as printed on it, whether or not a list knows it; `key` is its comparing key.
 
     `checked` keeps what the cross-check said at that moment, `why` the reason given where it spoke against.
     """
@@ -104,8 +104,8 @@ class FittedRow(SQLModel, table=True):
 
     id: int | None = Field(default=None, primary_key=True)
     job_id: int = Field(foreign_key="job.id", index=True)
-    number_id: int | None = Field(default=None, foreign_key="part_number.id", index=True)
     number: str
+    key: str = Field(index=True)
     maker: str = ""
     lot: str = Field(default="", index=True)
     supplier: str = Field(default="", index=True)

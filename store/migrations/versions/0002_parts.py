@@ -79,8 +79,8 @@ TABLES = (
     """CREATE TABLE fitted (
     id INTEGER NOT NULL,
     job_id INTEGER NOT NULL,
-    number_id INTEGER,
     number VARCHAR NOT NULL,
+    "key" VARCHAR NOT NULL,
     maker VARCHAR NOT NULL,
     lot VARCHAR NOT NULL,
     supplier VARCHAR NOT NULL,
@@ -91,12 +91,11 @@ TABLES = (
     checked VARCHAR NOT NULL,
     why VARCHAR NOT NULL,
     PRIMARY KEY (id),
-    FOREIGN KEY(job_id) REFERENCES job (id),
-    FOREIGN KEY(number_id) REFERENCES part_number (id)
+    FOREIGN KEY(job_id) REFERENCES job (id)
 )""",
     "CREATE INDEX ix_fitted_job_id ON fitted (job_id)",
+    'CREATE INDEX ix_fitted_key ON fitted ("key")',
     "CREATE INDEX ix_fitted_lot ON fitted (lot)",
-    "CREATE INDEX ix_fitted_number_id ON fitted (number_id)",
     "CREATE INDEX ix_fitted_supplier ON fitted (supplier)",
 )
 
