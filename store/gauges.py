@@ -115,9 +115,8 @@ def _all(record: Record, conn: Connection | None = None) -> dict[str, Gauge]:
 
 
 def _read(conn: Connection) -> dict[str, Gauge]:
-    order = (CalibrationRow.calibrated, CalibrationRow.id)
     calibrations: dict[int, list[Calibration]] = {}
-    for r in conn.execute(select(CalibrationRow.__table__).order_by(*order)).all():  # type: ignore[attr-defined]
+    for r in conn.execute(select(CalibrationRow.__table__).order_by("calibrated", "id")).all():  # type: ignore[attr-defined]
         one = Calibration(r.id, r.calibrated, r.due, r.expanded_uncertainty, r.k, r.result, r.note)
         calibrations.setdefault(r.gauge_id, []).append(one)
     rows = conn.execute(select(GaugeRow.__table__)).all()  # type: ignore[attr-defined]

@@ -7,7 +7,7 @@ from typing import Any
 
 from sqlalchemy import Connection
 
-from store import limit_sheets, models, people, times
+from store import job_lines, limit_sheets, models, people, times
 from store.changes import Change
 from store.errors import NotFound, Refused, brief
 from store.job_lines import JobLine
@@ -82,7 +82,7 @@ def find(record: Record, tag: str, conn: Connection | None = None) -> Job:
     if row is None:
         recent = conn.exec_driver_sql("SELECT tag FROM job ORDER BY id DESC LIMIT 2000").scalars().all()
         raise NotFound("job with the tag", tag, nearest(tag, [str(t) for t in recent]))
-    return Job(*row[:22], bool(row[22]))
+    return _job(row)
 
 
 def listing(
@@ -112,6 +112,12 @@ def counts(record: Record) -> dict[str, int]:
         return job_lines.counts(job_lines.search(driver(conn), most=100_000))
 
 
+def _job(row: Any) -> Job:
+    """A row of _JOB."""
+    *said, from_history = row
+    return Job(*said, from_history=bool(from_history))
+
+
 def of_unit(record: Record, model: str, serial: str) -> tuple[Job, ...]:
     """Every job of one unit, newest first; empty for a unit never seen. Raises NotFound for an unknown model."""
     found = models.find(record, model)
@@ -120,7 +126,7 @@ def of_unit(record: Record, model: str, serial: str) -> tuple[Job, ...]:
         rows = conn.exec_driver_sql(
             _JOB + "WHERE u.model_id = ? AND u.key = ? ORDER BY j.taken_in DESC, j.id DESC", (found.id, key)
         ).all()
-    return tuple(Job(*r[:22], bool(r[22])) for r in rows)
+    return tuple(map(_job, rows))
 
 
 def take_in(

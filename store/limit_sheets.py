@@ -134,7 +134,7 @@ def by_revision(record: Record, conn: Connection, revision_id: int) -> LimitShee
     order = {c.id: n for n, c in enumerate(known.all)}
     limits = tuple(
         SheetLimit(
-            r.id, known.by_id[r.characteristic_id].name, r.stage, r.unit, r.new, r.low, r.high, r.at_limit, r.count,
+            r.id, known.by_id[r.characteristic_id].name, r.stage, r.unit, r.new, r.low, r.high, r.at_limit, r._mapping["count"],
             r.source, r.note, _limit(r, known.by_id[r.characteristic_id], rev.decision),
         )
         for r in sorted(rows, key=lambda r: (order[r.characteristic_id], STAGES.index(r.stage)))
@@ -319,13 +319,13 @@ def _limit(r: Any, what: Characteristic, decision: Rule) -> Limit:
         low=size(r.low),
         high=size(r.high),
         equal_passes=r.at_limit == "pass",
-        expected=r.count or what.count or 1,
+        expected=r._mapping["count"] or what.count or 1,
         rule=decision,
     )
 
 
 def _revisions(conn: Connection, model_id: int) -> tuple[Revision, ...]:
     rows = conn.execute(
-        select(RevisionRow.__table__).where(RevisionRow.model_id == model_id).order_by(RevisionRow.number)  # type: ignore[attr-defined]
+        select(RevisionRow.__table__).where(RevisionRow.model_id == model_id).order_by("number")  # type: ignore[attr-defined]
     ).all()
     return tuple(Revision(r.id, r.model_id, r.number, Rule(r.decision), r.at, r.by, r.why) for r in rows)

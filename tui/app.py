@@ -145,14 +145,14 @@ class Wearline(App[None]):
         """Every place and every action of the screen, for the palette."""
         for name, place in PLACES.items():
             if not place.needs_more:
-                yield SystemCommand(place.title, place.says, lambda name=name: self.action_go(name))  # type: ignore[misc]
+                yield SystemCommand(place.title, place.says, lambda name=name: self.action_go(name))
         for binding in screen.active_bindings.values():
             if binding.binding.description and binding.enabled:
                 action = binding.binding.action
                 yield SystemCommand(
                     binding.binding.description.capitalize(),
                     f"key {binding.binding.key_display or binding.binding.key}",
-                    lambda action=action, node=binding.node: self.call_later(self.run_action, action, node),  # type: ignore[misc]
+                    lambda action=action, node=binding.node: self.call_later(self.run_action, action, node),
                 )
         yield SystemCommand("Paper or graphite", "the other theme", self.action_other_theme)
 

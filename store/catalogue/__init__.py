@@ -94,7 +94,7 @@ def _read(conn: Connection) -> Catalogue:
         Characteristic(
             id=r.id, name=r.name, component=r.component, label=r.label, machines=_parts(r.machines),
             quantity=Quantity(r.quantity), unit=r.unit, statistic=Statistic(r.statistic), derive=r.derive,
-            positions=_parts(r.positions) or ("1",), noun=r.noun, count=r.count, direction=r.direction,
+            positions=_parts(r.positions) or ("1",), noun=r.noun, count=r._mapping["count"], direction=r.direction,
             stages=_parts(r.stages), gauge=r.gauge, datum=r.datum, caution=r.caution, shipped=bool(r.shipped),
         )
         for r in rows

@@ -9,6 +9,7 @@ from math import sqrt
 from sqlalchemy import Connection
 
 from store import gauges, jobs, limit_sheets, models, readings, sheets, shop, verdicts
+from store.catalogue import Characteristic, catalogue
 from store.jobs import Job
 from store.readings import Reading
 from store.records import Record
@@ -86,7 +87,7 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
 def _last_change(conn: Connection, job: Job, moments: Sequence[str]) -> str:
     """When the job last changed: what dates a draft, so that it prints the same until then."""
     noted = rows(conn, "SELECT max(at) FROM audit WHERE subject = ?", (job.tag,))[0][0]
-    return max(filter(None, (noted, job.ended, job.taken_in, *moments[-1:])))
+    return max(str(m) for m in (noted, job.ended, job.taken_in, *moments[-1:]) if m)
 
 
 def _unit(conn: Connection, job: Job) -> contents.Unit:
@@ -150,9 +151,7 @@ def _characteristics(
             )  # fmt: skip
 
 
-def _in_order(record: Record, conn: Connection) -> Sequence[sheets.Characteristic]:
-    from store.catalogue import catalogue
-
+def _in_order(record: Record, conn: Connection) -> Sequence[Characteristic]:
     return catalogue(record, conn).all
 
 

@@ -33,7 +33,7 @@ class Quantity(StrEnum):
     unbalance = "unbalance"
     area = "area"
     attribute = "attribute"
-    count = "count"
+    count = "count"  # type: ignore[assignment]  # the trade's word; nobody counts letters in a quantity
 
 
 @dataclass(frozen=True, slots=True)

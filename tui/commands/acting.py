@@ -42,9 +42,9 @@ def on_record(function: Function) -> Function:
     @click.option("--debug", "debug", is_flag=True, hidden=True)
     @click.pass_context
     @functools.wraps(function)
-    def command(
-        ctx: click.Context, *args: Any, record_path: str | None, acting: str | None, debug: bool, **options: Any
-    ) -> Any:
+    def command(ctx: click.Context, /, *args: Any, **options: Any) -> Any:
+        record_path, acting = options.pop("record_path"), options.pop("acting")
+        options.pop("debug")
         shared = ctx.find_object(dict) or {}
         record = open_record(record_path or shared.get("record"), acting or shared.get("acting"))
         try:

@@ -155,7 +155,8 @@ class JobScreen(Standing):
         widget = self.query_one(ReadingSheet)
         moved: dict[str, Any] = {}
         for order, answer in answers:
-            screen, row, column = order.token  # type: ignore[misc]
+            token: Any = order.token
+            screen, row, column = token
             if screen is not self:
                 continue
             self.waiting -= 1

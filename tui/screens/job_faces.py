@@ -42,9 +42,8 @@ def shown(reading: Any) -> str:
     mark = reading.typed.mark.value
     if mark == "number":
         return str(reading.typed.text)
-    return {"not measured": "n.m.", "cannot judge": "n.j."}.get(mark, mark) + (
-        f" {reading.typed.detail}" if reading.typed.detail else ""
-    )
+    word = str({"not measured": "n.m.", "cannot judge": "n.j."}.get(mark, mark))
+    return word + (f" {reading.typed.detail}" if reading.typed.detail else "")
 
 
 def faces(sheet: Any) -> list[Face]:

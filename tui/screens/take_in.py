@@ -115,7 +115,11 @@ class TakeIn(Standing):
                 hours=values["hours"] or None,
             ).tag  # fmt: skip
 
-        self.ask("take", question, self.dismiss)
+        self.ask("take", question, self.taken)
+
+    def taken(self, tag: str) -> None:
+        """It is in the record."""
+        self.dismiss(tag)
 
     def action_close(self) -> None:
         """Back without a new job."""
