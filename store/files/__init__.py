@@ -35,9 +35,9 @@ class Loaded:
 
 def kinds() -> tuple[Kind, ...]:
     """Every kind of file, in the order in which they are loaded."""
-    from store.files import characteristics, gauges, jobs, limits, models, notes, readings, shop
+    from store.files import characteristics, fitted, gauges, jobs, limits, models, notes, numbers, parts, readings, shop
 
-    modules = (shop, characteristics, models, limits, gauges, jobs, readings, notes)
+    modules = (shop, characteristics, models, limits, gauges, numbers, parts, jobs, readings, notes, fitted)
     return tuple(kind for module in modules for kind in module.KINDS)
 
 
@@ -55,7 +55,7 @@ def kind_of(path: Path) -> Kind:
     for column in columns:
         if columns.count(column) > 1:
             raise FileRefused([BadLine(path.name, 1, column, "the column is there twice")])
-    found = [kind for kind in kinds() if set(kind.needed) <= set(columns) <= set(kind.columns)]
+    found = [kind for kind in kinds() if kind.is_of(columns)]
     if len(found) == 1:
         return found[0]
     if found:

@@ -47,7 +47,8 @@ class Kind:
     """One kind of CSV file.
 
     `take` gets the numbered lines of one file, checks them and writes them inside the load's change; `give` yields
-    the lines that `take` would take to make the same rows again, in the order of `columns`.
+    the lines that `take` would take to make the same rows again, in the order of `columns`. Where `either` names
+    columns, a file has at least one of them.
     """
 
     name: str
@@ -56,6 +57,12 @@ class Kind:
     take: Callable[[Loading, Iterator[Numbered]], int]
     give: Callable[[Record, Connection], Iterator[Sequence[str]]]
     may_be_empty: frozenset[str] = frozenset()
+    either: tuple[str, ...] = ()
+
+    def is_of(self, columns: Sequence[str]) -> bool:
+        """Whether a file with these columns is of this kind."""
+        has_one = not self.either or any(column in columns for column in self.either)
+        return has_one and set(self.needed) <= set(columns) <= set(self.columns)
 
     @property
     def columns(self) -> tuple[str, ...]:

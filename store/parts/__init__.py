@@ -1,0 +1,9 @@
+"""The cross-check: which number, on whose word, and does it go on this unit.
+
+numbers     what a number is: enter it, relate it, say what it fits
+candidates  which numbers of the record may be meant by one that is asked
+checking    what a number leads to, by which steps, with conflicts and bench evidence
+on_model    does it go on a model
+by_size     parts by their sizes
+fitting     a part fitted on a job
+"""
