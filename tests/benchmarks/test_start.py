@@ -40,7 +40,21 @@ def test_first_screen(demo_record_path: Path) -> None:
         theirs.append(time.perf_counter() - begun)
         ratios.append(ours[-1] / theirs[-1])
     ratio = statistics.median(ratios)
-    note("first frame", statistics.median(frames), "", statistics.median(theirs), statistics.median(frames) / statistics.median(theirs), "before the store")
-    note("first usable screen, 340 jobs", statistics.median(ours), "import textual.app, sqlmodel", statistics.median(theirs), ratio, "at most 1.3")
+    note(
+        "first frame",
+        statistics.median(frames),
+        "",
+        statistics.median(theirs),
+        statistics.median(frames) / statistics.median(theirs),
+        "before the store",
+    )
+    note(
+        "first usable screen, 340 jobs",
+        statistics.median(ours),
+        "import textual.app, sqlmodel",
+        statistics.median(theirs),
+        ratio,
+        "at most 1.3",
+    )
     assert statistics.median(frames) < statistics.median(theirs)
     assert ratio <= 1.3

@@ -112,7 +112,8 @@ class JobScreen(Standing):
         at = widget.keying.at if same else None
         aside, last = widget.keying.aside, widget.keying.last if same else []
         self.sheet = sheet = job_faces.asked(sheet, every=self.every_row)
-        widget.show(job_faces.rows(sheet), job_faces.faces(sheet), at)
+        refused = widget.keying.refused() if same else {}
+        widget.show(job_faces.rows(sheet, refused), job_faces.faces(sheet), at)
         widget.keying.aside, widget.keying.last = aside, last
         self.say_where()
         self.explain()

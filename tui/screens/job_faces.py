@@ -16,13 +16,16 @@ from tui.widgets.sheet import Face
 Which = tuple[str, str, str]
 
 
-def rows(sheet: Any) -> list[Row]:
-    """The rows that keys go into. Without any limit every row is asked, else those that the sheet asks for."""
+def rows(sheet: Any, refused: Mapping[tuple[str, str], Cell]) -> list[Row]:
+    """The rows that keys go into. Without any limit every row is asked, else those that the sheet asks for.
+
+    `refused` are cells that hold what was typed and not taken, by characteristic and position: they keep it.
+    """
     none_limited = not any(row.limit for row in sheet.rows)
     made = []
     for row in sheet.rows:
         cells = [
-            Cell(place, shown(reading) if reading else "", State.accepted if reading else State.empty)
+            Cell(place, shown(reading), State.accepted) if reading else refused.get((row.characteristic.name, place), Cell(place))
             for place, reading in zip(row.positions, row.readings, strict=True)
         ]
         is_test = row.characteristic.statistic.value == "attribute"

@@ -134,6 +134,12 @@ class Keying:
             return self._close(lambda: self._by(down, right))
         return self._close(lambda: self._by(PAGES[key], 0))
 
+    def refused(self) -> dict[tuple[str, str], Cell]:
+        """The cells that hold what was typed and not taken, by the names of row and position."""
+        return {
+            (row.name, cell.position): cell for row in self.rows for cell in row.cells if cell.state is State.refused
+        }
+
     def ask_not_measured(self) -> None:
         """Ask why the cell under the cursor is not measured; the next line typed is the reason."""
         if self.at is not None:
