@@ -2,6 +2,6 @@
 
 from __future__ import annotations
 
-from store.tables import audit, gauges, jobs, limits, models, notes, parts, people, readings
+from store.tables import audit, gauges, jobs, limits, models, notes, parts, people, readings, search
 
-__all__ = ["audit", "gauges", "jobs", "limits", "models", "notes", "parts", "people", "readings"]
+__all__ = ["audit", "gauges", "jobs", "limits", "models", "notes", "parts", "people", "readings", "search"]

@@ -1,0 +1,92 @@
+"""Which words of the notes a typed word stands for, and at what cost each."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+
+from store.rules import spelling
+from store.rules.queries import Term
+from store.rules.ranking import CORRECTED, EXACT, FAR, SAME
+from store.rules.words import forms
+from store.search.lexicon import Lexicon
+
+WITHIN = 0.3
+MOST_ALSO = 8
+ALSO_WITHIN = 4.0
+MOST_SLIPS = 40
+MOST_BEGINNINGS = 40
+SHORTEST_BEGINNING = 2
+
+
+@dataclass(frozen=True, slots=True)
+class Match:
+    """What a term is looked for as: words with their costs, and the corrections made, the likeliest first.
+
+    Words less likely than those are looked for, too, at the highest cost: what they find comes last.
+    """
+
+    costs: dict[str, int]
+    corrected: tuple[str, ...]
+
+
+Take = Callable[[str, int], None]
+
+
+def match(lexicon: Lexicon, term: Term, same: Mapping[str, tuple[str, ...]], refused: bool = False) -> Match:
+    """The words that a term is looked for as. `same` are the groups of the shorthand; `refused`: no corrections."""
+    word = term.word
+    costs: dict[str, int] = {}
+
+    def take(other: str, cost: int) -> None:
+        if cost < costs.get(other, FAR + 1) and lexicon.frequency(other):
+            costs[other] = cost
+
+    take(word, EXACT)
+    if term.literal:
+        return Match(costs, ())
+    for key in term.joined:
+        take(key, EXACT)
+    _widen(lexicon, word, same, SAME, take)
+    if term.unfinished and len(word) >= SHORTEST_BEGINNING:
+        for longer in lexicon.beginning(word, MOST_BEGINNINGS):
+            take(longer, SAME)
+    if refused:
+        return Match(costs, ())
+    corrected = _correct(lexicon, word, same, take, is_begun=term.unfinished and bool(costs))
+    return Match(costs, corrected)
+
+
+def _widen(lexicon: Lexicon, word: str, same: Mapping[str, tuple[str, ...]], cost: int, take: Take) -> None:
+    for other in same.get(word, ()):
+        take(other, cost)
+    for other in forms(word):
+        take(other, cost)
+
+
+def _correct(
+    lexicon: Lexicon, word: str, same: Mapping[str, tuple[str, ...]], take: Take, is_begun: bool
+) -> tuple[str, ...]:
+    """Look for slips of the word in the notes, and for what it may be a slip of; gives the corrections to be shown."""
+    slips, frequency = spelling.allowed_slips(word), lexicon.frequency(word)
+    reach = spelling.furthest_slips(word)
+    around = lexicon.near(word, reach)
+    near = [n for n in around if n.slips <= slips]
+    for other in spelling.slips_of(word, frequency, around, MOST_SLIPS):
+        take(other.word, FAR)
+    if is_begun:
+        return ()
+    likely = spelling.corrections(word, frequency, near, MOST_ALSO, ALSO_WITHIN)
+    if not likely and not frequency:
+        likely = spelling.corrections(word, 0, lexicon.near(word, reach + 1) if reach > 1 else around, MOST_ALSO, ALSO_WITHIN)
+    elif not frequency and reach > slips:
+        for meant in spelling.corrections(word, 0, around, MOST_ALSO, ALSO_WITHIN):
+            take(meant.word, FAR)
+    for n, meant in enumerate(likely):
+        take(meant.word, CORRECTED if meant.slips == 1 else FAR)
+        if n == 0:
+            _widen(lexicon, meant.word, same, FAR, take)
+            for other in spelling.slips_of(meant.word, meant.frequency, lexicon.near(meant.word, 1), MOST_SLIPS):
+                take(other.word, FAR)
+    best = spelling.liking(word, likely[0]) if likely else 0.0
+    return tuple(meant.word for meant in likely if spelling.liking(word, meant) >= best - WITHIN)
