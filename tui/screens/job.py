@@ -109,12 +109,14 @@ class JobScreen(Standing):
         if self.waiting or widget.keying.buffer:
             return
         same = self.sheet is not None and self.sheet.stage == stage
-        at = widget.keying.at if same else None
+        where = widget.keying.where if same else None
         aside, last = widget.keying.aside, widget.keying.last if same else []
+        before = [row.name for row in widget.keying.rows]
         self.sheet = sheet = job_faces.asked(sheet, every=self.every_row)
         refused = widget.keying.refused() if same else {}
-        widget.show(job_faces.rows(sheet, refused), job_faces.faces(sheet), at)
-        widget.keying.aside, widget.keying.last = aside, last
+        rows = job_faces.rows(sheet, refused)
+        widget.show(rows, job_faces.faces(sheet), where)
+        widget.keying.aside, widget.keying.last = aside, last if before == [row.name for row in rows] else []
         self.say_where()
         self.explain()
 

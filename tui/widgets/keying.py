@@ -134,6 +134,19 @@ class Keying:
             return self._close(lambda: self._by(down, right))
         return self._close(lambda: self._by(PAGES[key], 0))
 
+    @property
+    def where(self) -> tuple[str, str] | None:
+        """The names of row and position under the cursor, which hold when the sheet is read anew."""
+        return None if self.at is None else (self.rows[self.at[0]].name, self.rows[self.at[0]].cells[self.at[1]].position)
+
+    def stand(self, where: tuple[str, str]) -> None:
+        """Stand on the cell of these names, where there is one."""
+        for n, row in enumerate(self.rows):
+            for column, cell in enumerate(row.cells):
+                if (row.name, cell.position) == where:
+                    self.at = (n, column)
+                    return
+
     def refused(self) -> dict[tuple[str, str], Cell]:
         """The cells that hold what was typed and not taken, by the names of row and position."""
         return {

@@ -66,9 +66,11 @@ class ReadingSheet(ScrollView, can_focus=True):
         self.line_of: list[int] = []
         self.painted = 0
 
-    def show(self, rows: list[Row], faces: Sequence[Face], at: tuple[int, int] | None = None) -> None:
-        """Show a whole sheet; the cursor goes to `at` or to the first asked cell without a reading."""
-        self.keying = Keying(rows, at)
+    def show(self, rows: list[Row], faces: Sequence[Face], where: tuple[str, str] | None = None) -> None:
+        """Show a whole sheet; the cursor goes to the cell named by `where` or to the first asked one without a reading."""
+        self.keying = Keying(rows)
+        if where is not None:
+            self.keying.stand(where)
         self.faces = list(faces)
         self.lines, self.line_of = [], []
         for n, face in enumerate(faces):
