@@ -59,6 +59,15 @@ def test_what_finds_no_place_is_kept_aside() -> None:
     assert keying.aside == ["3", "4"]
 
 
+def test_arrows_lead_back_into_a_full_sheet() -> None:
+    """When every cell is filled the cursor is nowhere; an arrow brings it back."""
+    keying = sheet(2)
+    feed(keying, "1\n2\n")
+    assert keying.at is None
+    keying.press("up")
+    assert keying.at == (0, 0)
+
+
 def test_a_stray_enter_writes_nothing() -> None:
     """Enter without a value is no reading."""
     assert feed(sheet(3), "\n\n") == []

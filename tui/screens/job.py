@@ -109,13 +109,15 @@ class JobScreen(Standing):
         if self.waiting or widget.keying.buffer:
             return
         same = self.sheet is not None and self.sheet.stage == stage
-        where = widget.keying.where if same else None
+        where, is_through = (widget.keying.where, widget.keying.at is None) if same else (None, False)
         aside, last = widget.keying.aside, widget.keying.last if same else []
         before = [row.name for row in widget.keying.rows]
         self.sheet = sheet = job_faces.asked(sheet, every=self.every_row)
         refused = widget.keying.refused() if same else {}
         rows = job_faces.rows(sheet, refused)
         widget.show(rows, job_faces.faces(sheet), where)
+        if is_through and not any(c.state is State.empty for r in rows if r.is_asked for c in r.cells):
+            widget.keying.at = None
         widget.keying.aside, widget.keying.last = aside, last if before == [row.name for row in rows] else []
         self.say_where()
         self.explain()

@@ -123,6 +123,10 @@ class Keying:
         if key == ESCAPE:
             self.buffer, self.held, self.asking = "", "", Asking.value
             return []
+        if self.at is None and key not in {ENTER, TAB}:
+            made = self._submitted()  # kept aside
+            self.at = self._any()
+            return made
         if key == ENTER:
             return self._close(self._next)
         if key == TAB:
