@@ -141,7 +141,11 @@ def _take(kind: Kind, path: Path, loading: Loading) -> int:
                 yield number, line
 
     try:
-        taken = kind.take(loading, lines())
+        if kind.take_cells is not None:
+            taken = kind.take_cells(loading, reader.cells(path, loading.bad, kind.columns))
+        else:
+            assert kind.take is not None
+            taken = kind.take(loading, lines())
     except TooManyBadLines:
         raise FileRefused(loading.bad) from None
     except FileRefused as fault:

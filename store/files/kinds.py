@@ -40,6 +40,7 @@ class TooManyBadLines(Refused):
 
 
 Numbered = tuple[int, Line]
+Cells = tuple[int, tuple[str, ...]]
 
 
 @dataclass(frozen=True)
@@ -48,16 +49,18 @@ class Kind:
 
     `take` gets the numbered lines of one file, checks them and writes them inside the load's change; `give` yields
     the lines that `take` would take to make the same rows again, in the order of `columns`. Where `either` names
-    columns, a file has at least one of them.
+    columns, a file has at least one of them. `take_cells` stands in for `take` in a kind made for a million lines: it
+    gets the cells in the order of `columns` and looks itself whether needed ones are there.
     """
 
     name: str
     needed: tuple[str, ...]
     optional: tuple[str, ...]
-    take: Callable[[Loading, Iterator[Numbered]], int]
+    take: Callable[[Loading, Iterator[Numbered]], int] | None
     give: Callable[[Record, Connection], Iterator[Sequence[str]]]
     may_be_empty: frozenset[str] = frozenset()
     either: tuple[str, ...] = ()
+    take_cells: Callable[[Loading, Iterator[Cells]], int] | None = None
 
     def is_of(self, columns: Sequence[str]) -> bool:
         """Whether a file with these columns is of this kind."""

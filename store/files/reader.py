@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import codecs
 import csv
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
+from operator import itemgetter
 from pathlib import Path
 
 from store.errors import BadLine, FileRefused, RecordUnusable, brief
@@ -26,20 +27,39 @@ def lines(path: Path, bad: list[BadLine]) -> Iterator[tuple[int, dict[str, str]]
     A line with more or fewer cells than the header is added to `bad` and left out. Raises FileRefused where reading
     cannot go on: wrong encoding, an open quote at the end, a line longer than LONGEST_LINE.
     """
+    columns, rows = _even_rows(path, bad)
+    for number, row in rows:
+        yield number, dict(zip(columns, map(str.strip, row), strict=True))
+
+
+def cells(path: Path, bad: list[BadLine], wanted: Sequence[str]) -> Iterator[tuple[int, tuple[str, ...]]]:
+    """Like `lines`, with the cells of the wanted columns in that order, empty where the file lacks the column.
+
+    Half the cost of `lines`, for files of a million.
+    """
+    columns, rows = _even_rows(path, bad)
+    pick = itemgetter(*(columns.index(column) if column in columns else len(columns) for column in wanted))
+    strip = str.strip
+    for number, row in rows:
+        yield number, pick([*map(strip, row), ""])
+
+
+def _even_rows(path: Path, bad: list[BadLine]) -> tuple[list[str], Iterator[tuple[int, list[str]]]]:
+    """The columns, and the rows that have a cell for each; empty rows are skipped, uneven ones are added to `bad`."""
     rows = _rows(path)
     columns = [column.strip().lower() for column in next(rows)[1]]
     width = len(columns)
-    for number, row in rows:
-        if len(row) != width:
-            if not row:
-                continue
-            if len(row) < width:
-                why = f"{len(row)} cells where the header has {width}; is the file cut off?"
-                bad.append(BadLine(path.name, number, columns[len(row)], why))
-            else:
-                bad.append(BadLine(path.name, number, "", f"{len(row)} cells where the header has {width}"))
-            continue
-        yield number, dict(zip(columns, map(str.strip, row), strict=True))
+
+    def even() -> Iterator[tuple[int, list[str]]]:
+        for numbered in rows:
+            have = len(numbered[1])
+            if have == width:
+                yield numbered
+            elif have:
+                why = f"{have} cells where the header has {width}" + ("; is the file cut off?" if have < width else "")
+                bad.append(BadLine(path.name, numbered[0], columns[have] if have < width else "", why))
+
+    return columns, even()
 
 
 def _rows(path: Path) -> Iterator[tuple[int, list[str]]]:
