@@ -8,13 +8,17 @@ would harm the trade's words.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable
+from collections.abc import Container, Iterable
 from dataclasses import dataclass
 from itertools import pairwise
 
 from store.rules.words import has_digit
 
 MORE_FREQUENT = 20
+MORE_FREQUENT_THAN_FEW = 5
+FEW = 3
+KNOWN_WORD = 2.0
+SHORTEST_KNOWN = 5
 SLIP_COSTS = 4.0
 OTHER_FIRST_LETTER = 2.0
 COMMON_SLIP = 2.0
@@ -102,21 +106,38 @@ def consonants(word: str) -> str:
     return "".join(sorted(letter for before, letter in pairwise("\0" + word) if letter not in "aeiouy" and letter != before))
 
 
-def corrections(asked: str, frequency: int, near: Iterable[Neighbour], most: int, within: float) -> list[Neighbour]:
-    """What `asked` may have been meant as, the likeliest first: much more frequent neighbours whose liking is at most
-    `within` under the best.
+def corrections(
+    asked: str, frequency: int, near: Iterable[Neighbour], most: int, within: float, known: Container[str] = frozenset()
+) -> list[Neighbour]:
+    """What `asked` may have been meant as, the likeliest first: neighbours that are much more frequent, or words that are
+    known to be the trade's, whose liking is at most `within` under the best.
 
-    `frequency` is that of `asked` itself in the notes, 0 where nobody wrote it.
+    `frequency` is that of `asked` itself in the notes, 0 where nobody wrote it. A known word is never corrected.
     """
-    scored = sorted(
-        ((-liking(asked, n), n.word, n) for n in near if n.slips and n.frequency >= MORE_FREQUENT * frequency),
-        key=lambda s: s[:2],
-    )
+    if asked in known:
+        return []
+    least = (MORE_FREQUENT if frequency > FEW else MORE_FREQUENT_THAN_FEW) * frequency
+    may_be_known = len(asked) >= SHORTEST_KNOWN
+    scored = []
+    for n in near:
+        is_known = may_be_known and n.word in known
+        if n.slips and (n.frequency >= least or (is_known and MORE_FREQUENT * n.frequency >= frequency)):
+            scored.append((-liking(asked, n) - KNOWN_WORD * is_known, n.word, n))
+    scored.sort(key=lambda s: s[:2])
     return [n for score, _, n in scored[:most] if score <= scored[0][0] + within]
 
 
-def slips_of(word: str, frequency: int, near: Iterable[Neighbour], most: int) -> list[Neighbour]:
-    """Rare neighbours of a frequent word: slips that stand in the notes, the nearest first."""
-    rare = [n for n in near if n.slips and n.frequency <= max(1, frequency // MORE_FREQUENT)]
-    rare.sort(key=lambda n: (n.slips, n.word[:1] != word[:1], -n.frequency, n.word))
-    return rare[:most]
+def slips_of(
+    word: str, frequency: int, near: Iterable[Neighbour], most: int, known: Container[str] = frozenset()
+) -> list[Neighbour]:
+    """Neighbours of a word that are slips of it in the notes, the nearest first: rare ones; where the word is known to be
+    the trade's, any that are not and not far more frequent.
+    """
+    is_known = len(word) >= SHORTEST_KNOWN and word in known
+    rare = max(1, frequency // MORE_FREQUENT)
+    made = [
+        n for n in near
+        if n.slips and n.word not in known and (n.frequency <= rare or (is_known and n.frequency <= MORE_FREQUENT * frequency))
+    ]  # fmt: skip
+    made.sort(key=lambda n: (n.slips, n.word[:1] != word[:1], -n.frequency, n.word))
+    return made[:most]

@@ -6,8 +6,11 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 from store.rules import spelling
+from store.rules.findings import WORDS
 from store.rules.queries import Term
 from store.rules.ranking import CORRECTED, EXACT, FAR, SAME
+from store.rules.shorthand import SHIPPED
+from store.rules.spelling import Neighbour
 from store.rules.words import forms
 from store.search.lexicon import Lexicon
 
@@ -17,6 +20,7 @@ ALSO_WITHIN = 4.0
 MOST_SLIPS = 40
 MOST_BEGINNINGS = 40
 SHORTEST_BEGINNING = 2
+KNOWN = WORDS | {form for word in WORDS for form in forms(word)} | set(SHIPPED.values())
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,25 +72,33 @@ def _correct(
     lexicon: Lexicon, word: str, same: Mapping[str, tuple[str, ...]], take: Take, is_begun: bool
 ) -> tuple[str, ...]:
     """Look for slips of the word in the notes, and for what it may be a slip of; gives the corrections to be shown."""
-    slips, frequency = spelling.allowed_slips(word), lexicon.frequency(word)
-    reach = spelling.furthest_slips(word)
+    slips, reach, frequency = spelling.allowed_slips(word), spelling.furthest_slips(word), lexicon.frequency(word)
     around = lexicon.near(word, reach)
-    near = [n for n in around if n.slips <= slips]
-    for other in spelling.slips_of(word, frequency, around, MOST_SLIPS):
-        take(other.word, FAR)
+    _take_slips(word, frequency, around, take)
     if is_begun:
         return ()
-    likely = spelling.corrections(word, frequency, near, MOST_ALSO, ALSO_WITHIN)
-    if not likely and not frequency:
-        likely = spelling.corrections(word, 0, lexicon.near(word, reach + 1) if reach > 1 else around, MOST_ALSO, ALSO_WITHIN)
-    elif not frequency and reach > slips:
-        for meant in spelling.corrections(word, 0, around, MOST_ALSO, ALSO_WITHIN):
-            take(meant.word, FAR)
+    own_forms = set(forms(word))
+    other = [n for n in around if n.word not in own_forms]
+    likely = _likely(word, frequency, [n for n in other if n.slips <= slips])
+    if not frequency:
+        if not likely:
+            likely = _likely(word, 0, lexicon.near(word, reach + 1) if reach > 1 else other)
+        elif reach > slips:
+            for meant in _likely(word, 0, other):
+                take(meant.word, FAR)
     for n, meant in enumerate(likely):
         take(meant.word, CORRECTED if meant.slips == 1 else FAR)
         if n == 0:
             _widen(lexicon, meant.word, same, FAR, take)
-            for other in spelling.slips_of(meant.word, meant.frequency, lexicon.near(meant.word, 1), MOST_SLIPS):
-                take(other.word, FAR)
-    best = spelling.liking(word, likely[0]) if likely else 0.0
-    return tuple(meant.word for meant in likely if spelling.liking(word, meant) >= best - WITHIN)
+            _take_slips(meant.word, meant.frequency, lexicon.near(meant.word, 1), take)
+    shown = spelling.corrections(word, frequency, likely, MOST_ALSO, WITHIN, KNOWN)
+    return tuple(meant.word for meant in shown)
+
+
+def _likely(word: str, frequency: int, near: list[Neighbour]) -> list[Neighbour]:
+    return spelling.corrections(word, frequency, near, MOST_ALSO, ALSO_WITHIN, KNOWN)
+
+
+def _take_slips(word: str, frequency: int, near: list[Neighbour], take: Take) -> None:
+    for slip in spelling.slips_of(word, frequency, near, MOST_SLIPS, KNOWN):
+        take(slip.word, FAR)
