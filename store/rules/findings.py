@@ -17,7 +17,7 @@ from store.rules.words import forms, indexed
 
 MOST_OFFERED = 3
 _CLAUSE = re.compile(r"[,;:.!?()\n]+(?!\d)")
-_NOT = frozenset("no not none without never isnt wasnt ok good fine".split())
+_NOT = frozenset(["no", "not", "none", "without", "never", "isnt", "wasnt", "ok", "good", "fine"])
 
 
 @dataclass(frozen=True, slots=True)
@@ -145,7 +145,12 @@ system | cables bad | external | cable | bad resistance corroded
 def _line(line: str) -> Finding:
     component, mode, mechanism, names, says = (part.strip() for part in line.split("|"))
     return Finding(
-        component, mode, mechanism, "", frozenset((names or COMPONENT_NAMES[component]).split()), frozenset(says.split())
+        component,
+        mode,
+        mechanism,
+        "",
+        frozenset((names or COMPONENT_NAMES[component]).split()),
+        frozenset(says.split()),
     )
 
 

@@ -103,7 +103,9 @@ def consonants(word: str) -> str:
     >>> consonants("solinoid") == consonants("solenoid"), consonants("comutator")
     (True, 'cmrtt')
     """
-    return "".join(sorted(letter for before, letter in pairwise("\0" + word) if letter not in "aeiouy" and letter != before))
+    return "".join(
+        sorted(letter for before, letter in pairwise("\0" + word) if letter not in "aeiouy" and letter != before)
+    )
 
 
 def corrections(

@@ -18,6 +18,7 @@ COMMANDS = {
     "save": ("files", "Save one kind of thing as CSV."),
     "job": ("job", "Take in a core; list, show and link jobs."),
     "read": ("read", "Add or correct readings."),
+    "note": ("note", "Add notes, and find any again whichever side made the slip."),
     "judge": ("judge", "Show every verdict of a job, explained."),
     "limits": ("limits", "Show a model's limit sheet."),
     "gauges": ("gauges", "Gauges: list, due, calibrate, recall."),
