@@ -7,3 +7,9 @@ on_model    does it go on a model
 by_size     parts by their sizes
 fitting     a part fitted on a job
 """
+
+from __future__ import annotations
+
+from store.parts.checking import models_for
+
+__all__ = ["models_for"]
