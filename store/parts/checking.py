@@ -15,8 +15,8 @@ from store.parts.lists import RecordLists
 from store.parts.numbers import Number
 from store.parts.on_model import OnModel
 from store.records import Record
+from store.rules import attributes, interchange
 from store.rules import conflicts as clashes
-from store.rules import interchange
 from store.rules import numbers as rule
 from store.rules.conflicts import Conflict
 from store.rules.interchange import Relation, Stated, Step, Trust
@@ -38,10 +38,7 @@ class Way:
     @property
     def says(self) -> str:
         """The step in one line: `A superseded by B (List 3, 2024-05-01)`."""
-        word = "source" if not self.source else self.source + (f", {self.dated}" if self.dated else ", undated")
-        caveat = f"; {self.caveat}" if self.caveat else ""
-        said = "no source" if not self.source else word
-        return f"{name(self.start)} {self.relation.replace('-', ' ')} {name(self.end)} ({said}){caveat}"
+        return statement(self.relation, name(self.start), name(self.end), self.source, self.caveat, self.dated)
 
 
 @dataclass(frozen=True, slots=True)
@@ -164,7 +161,7 @@ class _Checking:
             tuple(self._contradiction(one) for one in clash),
             tuple(one.number for one in led),
             self._parts(led),
-            on.get(starts[0]) if len(starts) == 1 or (starts and on) else None,
+            on[starts[0]] if on and starts else self._unknown(),
             walk.bounded,
         )  # fmt: skip
 
@@ -177,6 +174,13 @@ class _Checking:
             return {}
         return on_model.answers(self.conn, [self.names[which] for which in ids], self.model)
 
+    def _unknown(self) -> OnModel | None:
+        """The answer for a number that no list knows: nothing is proved."""
+        if self.model is None:
+            return None
+        comparison = attributes.compare("", {}, on_model.model_attributes(self.conn, self.model))
+        return OnModel(self.model.number, comparison, (), ())
+
     def _path(self, steps: Sequence[Step]) -> tuple[Way, ...]:
         return tuple(
             Way(
@@ -187,15 +191,8 @@ class _Checking:
         )  # fmt: skip
 
     def _statement(self, one: Stated) -> str:
-        source = one.source or "no source"
-        dated = f", {one.dated}" if one.dated else ""
-        of, to = name(self.names[one.of]), name(self.names[one.to]) if one.to is not None else ""
-        caveat = f"; {one.caveat}" if one.caveat else ""
-        if one.relation is Relation.do_not_use:
-            what = f"do not use {to} for {of}" if to else f"do not use {of}"
-        else:
-            what = f"{of} {one.relation.replace('-', ' ')} {to}"
-        return f"{what} ({source}{dated}){caveat}"
+        to = name(self.names[one.to]) if one.to is not None else ""
+        return statement(one.relation, name(self.names[one.of]), to, one.source, one.caveat, one.dated)
 
     def _contradiction(self, one: Conflict) -> Contradiction:
         return Contradiction(one.clash.value, tuple(self._statement(stated) for stated in one.says))
@@ -243,6 +240,16 @@ def models_for(record: Record, number: str) -> tuple[str, ...]:
     slip away is not taken for meant. Raises Refused where too little of it can be read.
     """
     return check(record, number).models
+
+
+def statement(relation: Relation, of: str, to: str, source: str, caveat: str, dated: str) -> str:
+    """A statement in one line, on whose word: `A superseded by B (List 3, 2024-05-01); new connector`."""
+    if relation is Relation.do_not_use:
+        said = f"do not use {to} for {of}" if to else f"do not use {of}"
+    else:
+        said = f"{of} {relation.replace('-', ' ')} {to}"
+    word = f"{source}, {dated or 'undated'}" if source else "no source"
+    return f"{said} ({word})" + (f"; {caveat}" if caveat else "")
 
 
 def name(number: Number) -> str:

@@ -45,26 +45,31 @@ class Compared:
 
 @dataclass(frozen=True, slots=True)
 class Comparison:
-    """All attributes compared, those that must match first, and the verdict."""
+    """All attributes compared, those that must match first, and the verdict.
+
+    `silent` are those that must match for the kind and that neither side states: the verdict does not speak of them.
+    """
 
     verdict: Fits
     attributes: tuple[Compared, ...]
+    silent: tuple[str, ...] = ()
 
     @property
     def because(self) -> str:
         """The verdict in a sentence."""
         differ = [a for a in self.attributes if a.state is State.differs]
         unknown = [a.name for a in self.attributes if a.state is State.unknown and a.must]
-        said = [
-            f"{a.name} is {a.part}, the model's is {a.model}" for a in differ if a.must or self.verdict is not Fits.fits
-        ]
-        if unknown:
-            said.append(f"{', '.join(unknown)} not known on both sides")
-        if not self.attributes:
-            said.append("no attribute is known to compare")
+        agree = [a.name for a in self.attributes if a.state is State.agrees and a.must]
+        said = [f"{a.name} is {a.part}, the model's is {a.model}" for a in differ]
         if self.verdict is Fits.fits:
-            said = [f"{sum(a.must for a in self.attributes)} attributes that must match agree"]
-        return f"{self.verdict}: {'; '.join(said)}" if said else str(self.verdict)
+            said.append(f"{', '.join(agree)} agree" if len(agree) > 1 else f"{agree[0]} agrees")
+        elif unknown:
+            said.append(f"{', '.join(unknown)} known on one side only")
+        elif not differ:
+            said.append("no attribute that must match is stated")
+        if self.silent and self.verdict is not Fits.does_not_fit:
+            said.append(f"stated on neither side: {', '.join(self.silent)}")
+        return f"{self.verdict}: {'; '.join(said)}"
 
 
 _STARTER = (
@@ -108,20 +113,21 @@ def must_match(kind: str) -> tuple[str, ...]:
 def compare(kind: str, part: Mapping[str, str], model: Mapping[str, str]) -> Comparison:
     """The attributes of a part against those of a model; names as `attribute_name` gives them, values as typed.
 
-    What must match for the kind is judged even where neither side says it; further attributes where both sides say
-    them. One that must match and differs: does not fit; one that must match and is unknown, or another that differs:
-    not proved. `viewed-from` is the viewpoint of `rotation`; without one it is the drive end, as the record defines it.
+    An attribute that either side states is compared when it must match, a further one when both state it. One that must
+    match and differs: does not fit; one that must match and is unknown on one side, or another that differs: not proved.
+    `viewed-from` is the viewpoint of `rotation`; without one it is the drive end, as the record defines it.
     """
-    must = must_match(kind)
-    known = set(must) | ((part.keys() & model.keys()) - {"viewed-from"})
-    known |= (part.keys() | model.keys()) & EVERY_MUST if not must else set()
+    must = must_match(kind) or tuple(sorted(EVERY_MUST))
+    stated = (part.keys() | model.keys()) - {"viewed-from"}
+    both = part.keys() & model.keys() - {"viewed-from"}
     order = {name: n for n, name in enumerate(must)}
+    known = {name for name in stated if name in order and (must_match(kind) or name in both)} | both
     found = []
     for name in sorted(known, key=lambda n: (order.get(n, len(order)), n)):
         ours, theirs = _said(name, part), _said(name, model)
-        is_must = name in must or (name in EVERY_MUST and bool(ours) and bool(theirs))
-        found.append(Compared(name, ours, theirs, _state(name, ours, theirs), is_must))
-    return Comparison(_verdict(found), tuple(found))
+        found.append(Compared(name, ours, theirs, _state(name, ours, theirs), name in order))
+    silent = tuple(name for name in must_match(kind) if name not in known)
+    return Comparison(_verdict(found), tuple(found), silent)
 
 
 def _verdict(found: list[Compared]) -> Fits:

@@ -12,7 +12,6 @@ from __future__ import annotations
 import unicodedata
 from dataclasses import dataclass
 from enum import StrEnum
-from itertools import product
 
 from store.errors import Refused, brief
 
@@ -138,12 +137,11 @@ def slip_keys(raw: str) -> frozenset[str]:
 
 def readable_keys(raw: str) -> frozenset[str]:
     """Every folded key that `raw` may be once its `?` are read: 31 for one, 961 for two, 29,791 for three."""
-    parts = raw.translate(_ALIKE).split(UNREADABLE)
-    found = set()
-    for letters in product(FOLDED_ALPHABET, repeat=len(parts) - 1):
-        word = parts[0] + "".join(letter + part for letter, part in zip(letters, parts[1:], strict=True))
-        found.add(_unpadded(word))
-    return frozenset(found)
+    first, *rest = raw.translate(_ALIKE).split(UNREADABLE)
+    words = [first]
+    for part in rest:
+        words = [f"{word}{letter}{part}" for word in words for letter in FOLDED_ALPHABET]
+    return frozenset(words if first and first[0] != "0" else map(_unpadded, words))
 
 
 def _characters(number: str, *, asking: bool = False) -> str:
