@@ -105,6 +105,62 @@ def rebuild(record: Record, conn: Connection, job: Judgeable) -> None:
         refresh(record, conn, job, stage, [known.by_id[int(i)].name for i in measured])
 
 
+def compare(record: Record, job_ids: Sequence[int]) -> tuple[int, tuple[str, str] | None]:
+    """Judge jobs anew and hold it against what is kept: how many judgements stand, and the first that does not."""
+    stand = 0
+    with record.read() as conn:
+        known = catalogue(record, conn)
+        owned = gauges.by_id(record, conn)
+        for job_id in job_ids:
+            kept_by = {
+                (r[1], r[2]): tuple(r) for r in rows(conn, "SELECT * FROM judgement WHERE job_id = ?", (job_id,))
+            }
+            made = _all_of(record, conn, known, owned, job_id)
+            for key in kept_by.keys() | made.keys():
+                if kept_by.get(key) != made.get(key):
+                    tag = rows(conn, "SELECT tag FROM job WHERE id = ?", (job_id,))[0][0]
+                    one = known.by_id.get(key[1])
+                    where = f"judgement of {tag}, {one.name if one else key[1]}, {key[0]}"
+                    return stand, (where, "does not agree with the readings")
+            stand += len(made)
+    return stand, None
+
+
+_EVERY = (
+    "SELECT r.characteristic_id, r.position, r.typed, r.mark, r.value, r.unit, r.places, r.detail, r.gauge_id, r.stage, "
+    "r.id, r.corrects_id FROM reading r WHERE r.job_id = ? ORDER BY r.id"
+)
+_KIND = (
+    "SELECT m.kind, j.revision_id FROM job j JOIN unit u ON u.id = j.unit_id JOIN model m ON m.id = u.model_id "
+    "WHERE j.id = ?"
+)
+
+
+def _all_of(
+    record: Record, conn: Connection, known: Catalogue, owned: dict[int, Gauge], job_id: int
+) -> dict[tuple[str, int], tuple[Any, ...]]:
+    """The judgements of one job as rows, from all its readings read at once."""
+    found = rows(conn, _EVERY, (job_id,))
+    if not found:
+        return {}
+    corrected = {r[11] for r in found if r[11] is not None}
+    kind, revision_id = rows(conn, _KIND, (job_id,))[0]
+    sheet = None if revision_id is None else limit_sheets.by_revision(record, conn, revision_id)
+    sure: Sure = {}
+    by_stage: dict[str, dict[str, list[Measured]]] = {}
+    for r in found:
+        if r[10] not in corrected:
+            of_stage = by_stage.setdefault(r[9], {})
+            of_stage.setdefault(known.by_id[r[0]].name, []).append(measured(r, owned, sure))
+    made = {}
+    for stage, readings in by_stage.items():
+        for one in _with_derived(known, readings, kind, sheet, stage):
+            if _has_readings(one, readings):
+                limit = sheet.at(one.name, stage) if sheet else None
+                made[(stage, one.id)] = stored(job_id, one, stage, limit, judged(one, limit, readings))
+    return made
+
+
 def judged(one: Characteristic, limit: SheetLimit | None, readings: dict[str, list[Measured]]) -> Judgement:
     """The judgement of one characteristic by readings of it (or of what it is derived from), by name."""
     exact = limit.limit if limit else None

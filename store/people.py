@@ -63,6 +63,14 @@ def require_known(record: Record, conn: Connection | None = None) -> None:
         raise Refused(f"say who acts: --as INITIALS, one of {', '.join(r[0] for r in found)}")
 
 
+def find(record: Record, initials: str) -> Person:
+    """The person with these initials. Raises NotFound."""
+    known = {person.initials.casefold(): person for person in listing(record)}
+    if initials.casefold() not in known:
+        raise NotFound("person with the initials", initials, nearest(initials, [p.initials for p in known.values()]))
+    return known[initials.casefold()]
+
+
 def rights(text: str) -> tuple[str, ...]:
     """`bench;inspect` as a tuple in the order of RIGHTS. Raises Refused for a right that there is not."""
     asked = {part.strip() for part in text.replace(",", ";").split(";") if part.strip()}

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from typing import Any
 
@@ -155,6 +155,16 @@ def _add(record: Record, tag: str, entries: Sequence[Entry], *, whole: bool) -> 
 
 def _action(entries: Sequence[Entry]) -> str:
     return f"reading{'s' if len(entries) > 1 else ''} {'corrected' if all(e.why for e in entries) else 'added'}"
+
+
+def correct_in(record: Record, change: Change, tag: str, entries: Sequence[Entry]) -> None:
+    """Correct readings of a job that has ended, inside the change that amends its report. Raises like `add`."""
+    job = replace(_job(change.conn, tag), outcome="open")
+    for entry in entries:
+        if not entry.why:
+            raise Refused("a correction has a reason")
+        _, one = _insert(record, change, job, entry)
+        judgements.refresh(record, change.conn, job, entry.stage, (one.name,))
 
 
 def of_job(record: Record, tag: str, stage: str | None = None, *, corrected: bool = False) -> tuple[Reading, ...]:

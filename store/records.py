@@ -137,6 +137,14 @@ def open(  # noqa: A001
     return replace(record, by=people.acting(record, by))
 
 
+def look(path: Path, now: Now = times.now) -> Record:
+    """A record to be read only: nothing about the file is changed. Raises RecordUnusable where it is of another schema."""
+    version = _version(path)
+    if version != HEAD:
+        raise RecordUnusable(f"{path} is of schema {version}; this program reads {HEAD}")
+    return Record(path, engine(path, read_only=True), SHOP, now)
+
+
 def _look_at_place(path: Path, create: bool) -> None:
     kind = share(path)
     if kind:

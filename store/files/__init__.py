@@ -35,9 +35,22 @@ class Loaded:
 
 def kinds() -> tuple[Kind, ...]:
     """Every kind of file, in the order in which they are loaded."""
-    from store.files import characteristics, fitted, gauges, jobs, limits, models, notes, numbers, parts, readings, shop
+    from store.files import (
+        characteristics,
+        fitted,
+        gauges,
+        jobs,
+        limits,
+        models,
+        notes,
+        numbers,
+        parts,
+        readings,
+        releases,
+        shop,
+    )
 
-    modules = (shop, characteristics, models, limits, gauges, numbers, parts, jobs, readings, notes, fitted)
+    modules = (shop, characteristics, models, limits, gauges, numbers, parts, jobs, readings, notes, fitted, releases)
     return tuple(kind for module in modules for kind in module.KINDS)
 
 

@@ -26,7 +26,7 @@ def _take(loading: Loading, lines: Iterator[Numbered]) -> int:
 def _rows(loading: Loading, lines: Iterator[Numbered]) -> Iterator[tuple[Any, ...]]:
     conn = loading.change.conn
     jobs = {r[0]: (r[1], r[2]) for r in conn.exec_driver_sql("SELECT key, id, coalesce(ended, taken_in) FROM job")}
-    people = {r[0] for r in conn.exec_driver_sql("SELECT initials FROM person")}
+    people = {r[0] for r in conn.exec_driver_sql("SELECT initials FROM person UNION ALL SELECT 'shop' FROM person")}
     for place, line in lines:
         job = jobs.get(comparing_key(line["tag"]))
         if job is None:

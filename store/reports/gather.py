@@ -74,6 +74,7 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         else contents.Decision(sheet.revision.decision.value, RULES[sheet.revision.decision]),
         characteristics=tuple(_characteristics(record, conn, job, found, left)),
         findings=_findings(conn, job),
+        concessions=_concessions(conn, job, names),
         gauges=_gauges(record, conn, taken),
         measured_by=tuple(contents.Person(who, names.get(who, "")) for who in sorted({r.by for r in taken})),
         assembled_by=contents.Person(job.assembled_by, names.get(job.assembled_by, "")) if job.assembled_by else None,
@@ -108,6 +109,17 @@ def _unit(conn: Connection, job: Job) -> contents.Unit:
 def _findings(conn: Connection, job: Job) -> tuple[contents.Finding, ...]:
     sql = "SELECT component, mode, mechanism, cause, note FROM finding WHERE job_id = ? ORDER BY id"
     return tuple(contents.Finding(*row) for row in rows(conn, sql, (job.id,)))
+
+
+def _concessions(conn: Connection, job: Job, names: dict[str, str]) -> tuple[contents.Concession, ...]:
+    sql = (
+        "SELECT c.label, k.departure, k.because, k.by, k.at FROM concession k "
+        "JOIN characteristic c ON c.id = k.characteristic_id WHERE k.job_id = ? ORDER BY k.id"
+    )
+    return tuple(
+        contents.Concession(label, departure, because, contents.Person(by, names.get(by, "")), at)
+        for label, departure, because, by, at in rows(conn, sql, (job.id,))
+    )
 
 
 def _gauges(record: Record, conn: Connection, taken: Iterable[Reading]) -> tuple[contents.Gauge, ...]:

@@ -5,15 +5,16 @@ from __future__ import annotations
 import tempfile
 from pathlib import Path
 
+from store import releases
 from store.records import Record
-from store.reports import gather, printing, saving
+from store.reports import printing, saving
 from store.reports import text as as_text
 from store.reports.contents import Report
 
 
 def standing(record: Record, tag: str) -> Report:
-    """The report that stands for a job: a draft until it is released. Raises NotFound."""
-    return gather.draft(record, tag)
+    """The report that stands for a job: the newest that was issued, a draft until one is. Raises NotFound."""
+    return releases.standing(record, tag)[0]
 
 
 def text(record: Record, tag: str) -> str:

@@ -17,9 +17,15 @@ from sqlalchemy.pool import QueuePool
 from store.sqlite.connections import BUSY_SECONDS, connect
 
 
-def engine(path: Path) -> Engine:
+def engine(path: Path, *, read_only: bool = False) -> Engine:
     """A SQLAlchemy engine whose connections come from `connect` and whose transactions begin as asked."""
-    made = create_engine("sqlite://", creator=lambda: connect(path), poolclass=QueuePool, pool_size=4, max_overflow=8)
+    made = create_engine(
+        "sqlite://",
+        creator=lambda: connect(path, read_only=read_only),
+        poolclass=QueuePool,
+        pool_size=4,
+        max_overflow=8,
+    )
 
     @event.listens_for(made, "begin")
     def _begin(connection: Connection) -> None:

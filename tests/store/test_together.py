@@ -27,7 +27,9 @@ def test_two_programs_write_two_thousand_readings_in_turn(record: Record, tmp_pa
     tag = shop.core(record).tag
     record.close()
     running = [
-        subprocess.Popen([sys.executable, "-c", WRITER, str(record.path), tag, stage, "1000"], stderr=subprocess.PIPE, text=True)
+        subprocess.Popen(
+            [sys.executable, "-c", WRITER, str(record.path), tag, stage, "1000"], stderr=subprocess.PIPE, text=True
+        )
         for stage in ("as-found", "as-left")
     ]
     said = [process.communicate()[1] for process in running]
