@@ -224,7 +224,7 @@ def _signature(record: Record, change: Change, job: Job, note: str) -> contents.
 
 
 def _issue(change: Change, job: Job, report: contents.Report, why: str, amends_id: int | None) -> Issued:
-    text = canonical.to_json(report)
+    text = canonical.to_json(report).strip()
     digest = hashlib.sha256(text.encode()).hexdigest()
     made = change.insert(
         ReleaseRow, job_id=job.id, number=report.number, outcome=report.outcome, at=change.at, by=change.by, why=why,

@@ -11,7 +11,10 @@ import pytest
 def modules_after(code: str) -> set[str]:
     """The names of all modules after running some code in a fresh interpreter."""
     done = subprocess.run(
-        [sys.executable, "-c", f"import sys\n{code}\nprint('\\n'.join(sys.modules))"], capture_output=True, text=True, check=True
+        [sys.executable, "-c", f"import sys\n{code}\nprint('\\n'.join(sys.modules))"],
+        capture_output=True,
+        text=True,
+        check=True,
     )
     return set(done.stdout.split())
 

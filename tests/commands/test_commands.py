@@ -23,7 +23,12 @@ def run(*arguments: str, **env: str) -> subprocess.CompletedProcess[str]:
     import os
 
     return subprocess.run(
-        [sys.executable, "-m", "tui", *arguments], capture_output=True, text=True, check=False, cwd=ROOT, env={**os.environ, **env}
+        [sys.executable, "-m", "tui", *arguments],
+        capture_output=True,
+        text=True,
+        check=False,
+        cwd=ROOT,
+        env={**os.environ, **env},
     )
 
 
@@ -42,7 +47,10 @@ def test_a_core_goes_through(path: str, tmp_path: Path) -> None:
     assert (made.returncode, made.stdout.strip()) == (0, "1002")
     read = run("--record", path, "read", "1002", "brush-length", "11.4", "11.2", "11.5", "9.2", "--gauge", "CAL-1")
     assert read.returncode == 0
-    assert "brush length: out; brush 4 is 9.20 mm" in read.stdout or "brush length: out; brush 4 is 9.2 mm, 0.3 under the 9.5 minimum" in read.stdout
+    assert (
+        "brush length: out; brush 4 is 9.20 mm" in read.stdout
+        or "brush length: out; brush 4 is 9.2 mm, 0.3 under the 9.5 minimum" in read.stdout
+    )
     judged = json.loads(run("judge", "1002", "--json", "--record", path).stdout)
     assert set(judged) == {"tag", "model", "revision", "stages"}
     verdict = next(v for v in judged["stages"]["as-found"]["verdicts"] if v["characteristic"] == "brush-length")

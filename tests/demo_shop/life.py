@@ -16,9 +16,22 @@ CUSTOMERS = (
     "Marrow Farm", "Tolland Quarry", "Brindle Buses", "Fenwick Haulage", "Ashby Boatyard", "North Mill", "Parish of Odd",
     "Corran Plant Hire", "Well Street Garage", "Hallow Dairy", "walk-in", "Dunnock Taxis",
 )  # fmt: skip
-WORKS_ON = {"starter": ("tractor", "loader", "bus", "boat", "truck", "generator set"), "generator": ("tractor", "crane", "boat"), "alternator": ("bus", "truck", "loader", "van")}
+WORKS_ON = {
+    "starter": ("tractor", "loader", "bus", "boat", "truck", "generator set"),
+    "generator": ("tractor", "crane", "boat"),
+    "alternator": ("bus", "truck", "loader", "van"),
+}
 COMPLAINTS = {
-    "starter": ("cranks slow", "clicks, does not turn", "solenoid chatters", "spins, does not engage", "stays in", "no crank", "noisy", "slow when hot"),
+    "starter": (
+        "cranks slow",
+        "clicks, does not turn",
+        "solenoid chatters",
+        "spins, does not engage",
+        "stays in",
+        "no crank",
+        "noisy",
+        "slow when hot",
+    ),
     "generator": ("no charge", "low output", "noisy", "lamp stays on"),
     "alternator": ("no charge", "overcharges", "noisy bearing", "lamp glows", "low output at idle"),
 }
@@ -144,7 +157,11 @@ class Shop:
             visit.ended = None
         if visit.model.kind == "starter" and (visit.fault[0] == "solenoid" or draw.random() < 0.45):
             recent = visit.taken_in > START + timedelta(days=240)
-            visit.lot = BAD_LOT if recent and visit.taken_in < START + timedelta(days=520) and draw.random() < 0.55 else draw.choice(GOOD_LOTS)
+            visit.lot = (
+                BAD_LOT
+                if recent and visit.taken_in < START + timedelta(days=520) and draw.random() < 0.55
+                else draw.choice(GOOD_LOTS)
+            )
             visit.supplier = draw.choices(("Wray Electrical", "Penhallow Spares", "Brackwater Parts"), (60, 34, 6))[0]
         self._job(visit)
         if stage != "taken in":
@@ -179,18 +196,25 @@ class Shop:
         if visit.came_back_as not in {"no-fault", "not-ours"}:
             self.books.findings.append((visit.tag, component, mode, mechanism, cause, ""))
         for n in range(draw.choices((0, 1, 2, 3), (15, 50, 25, 10))[0]):
-            text = draw.choice(NOTES).format(comm=draw.choice(("comm", "com", "commutator", "comutator")), sol=draw.choice(("sol", "solenoid", "solinoid")))
+            text = draw.choice(NOTES).format(
+                comm=draw.choice(("comm", "com", "commutator", "comutator")),
+                sol=draw.choice(("sol", "solenoid", "solinoid")),
+            )
             at = visit.taken_in + timedelta(hours=4 + 3 * n)
             self.books.notes.append((visit.tag, text, _time(min(at, END)), visit.bench))
         if visit.special:
-            self.books.notes.append((visit.tag, _SAYS[visit.special], _time(visit.taken_in + timedelta(hours=6)), visit.bench))
+            self.books.notes.append(
+                (visit.tag, _SAYS[visit.special], _time(visit.taken_in + timedelta(hours=6)), visit.bench)
+            )
 
     def _parts(self, visit: Visit) -> None:
         draw, m = self.draw, visit.model
         at = _time((visit.ended or END) - timedelta(hours=7))
         suffix = m.number.partition("-")[2]
         if visit.lot:
-            self.books.fitted.append((visit.tag, f"CT-{suffix}", "Wearwell", visit.lot, visit.supplier, "solenoid", "1", visit.bench, at))
+            self.books.fitted.append(
+                (visit.tag, f"CT-{suffix}", "Wearwell", visit.lot, visit.supplier, "solenoid", "1", visit.bench, at)
+            )
         if draw.random() < 0.7:
             lot = f"BR-{draw.randint(21, 26)}{draw.randint(0, 9)}"
             supplier = draw.choices(("Wray Electrical", "Penhallow Spares"), (60, 40))[0]
@@ -225,7 +249,9 @@ class Shop:
             text, unit = _typed(line, size, visit.model.inch)
             self._write(visit, stage, line, place, text, unit, _gauge(line, visit.model.inch), moment)
 
-    def _write(self, visit: Visit, stage: str, line: Line, place: str, text: str, unit: str, gauge: str, moment: datetime) -> None:
+    def _write(
+        self, visit: Visit, stage: str, line: Line, place: str, text: str, unit: str, gauge: str, moment: datetime
+    ) -> None:
         at = _time(min(moment, END))
         place = "" if place == "1" else place  # the first is where a reading goes by itself
         self.books.readings.append((visit.tag, stage, line.characteristic, text, place, unit, gauge, visit.bench, at))

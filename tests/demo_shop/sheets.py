@@ -31,14 +31,37 @@ MODELS = (
     Model("KS-245", "starter", 24, "cw", 11, 29, 4, 1.1, note="replaces KS-240"),
     Model("KS-310", "starter", 12, "cw", 10, 23, 4, 0.9, inch=True),
     Model("KS-350", "starter", 24, "cw", 12, 33, 4, 1.25, limits=False, note="no limits found yet"),
-    Model("KS-400", "starter", 12, "cw", 9, 28, 4, 0.7, may_turn=False, note="planetary, permanent magnets; commutator not to be turned"),
+    Model(
+        "KS-400",
+        "starter",
+        12,
+        "cw",
+        9,
+        28,
+        4,
+        0.7,
+        may_turn=False,
+        note="planetary, permanent magnets; commutator not to be turned",
+    ),
     Model("KS-520", "starter", 24, "cw", 11, 33, 6, 1.4, inch=True, brushes=8),
     Model("KG-120", "generator", 12, "cw", None, 28, 2, 0.9, brushes=2),
     Model("KG-240", "generator", 24, "cw", None, 36, 4, 1.3, inch=True, brushes=4),
     Model("KA-145", "alternator", 14, "cw", None, None, 12, 0.8, brushes=2),
     Model("KA-170", "alternator", 14, "cw", None, None, 12, 0.9, brushes=2),
     Model("KA-280", "alternator", 28, "cw", None, None, 12, 1.1, brushes=2),
-    Model("KA-285", "alternator", 28, "ccw", None, None, 12, 1.1, inch=True, brushes=2, note="other rotation, fan to match"),
+    Model(
+        "KA-285",
+        "alternator",
+        28,
+        "ccw",
+        None,
+        None,
+        12,
+        1.1,
+        inch=True,
+        brushes=2,
+        note="other rotation, fan to match",
+    ),
 )
 
 
@@ -68,8 +91,22 @@ def sheet(model: Model) -> tuple[Line, ...]:
 def _brushes(m: Model) -> tuple[Line, ...]:
     s = m.size
     return (
-        Line("brush-length", "mm", round(17 * s, 1), round(10 * s, 1), None, 2, "CAL-2", 0.6, 0.05, count=m.brushes, lengths=True),
-        Line("brush-spring-force", "N", round(18 * s, 1), round(12 * s, 1), None, 1, "SPR-1", 0.3, 0.04, count=m.brushes),
+        Line(
+            "brush-length",
+            "mm",
+            round(17 * s, 1),
+            round(10 * s, 1),
+            None,
+            2,
+            "CAL-2",
+            0.6,
+            0.05,
+            count=m.brushes,
+            lengths=True,
+        ),
+        Line(
+            "brush-spring-force", "N", round(18 * s, 1), round(12 * s, 1), None, 1, "SPR-1", 0.3, 0.04, count=m.brushes
+        ),
     )
 
 
@@ -78,7 +115,9 @@ def _commutator(m: Model, new: float) -> tuple[Line, ...]:
         Line("growler-short", "", None, None, None, 0, "", stage="both"),
         Line("armature-ground", "", None, None, None, 0, "", stage="both"),
         Line("shaft-runout", "mm", None, None, 0.08, 2, "DI-1", 0.3, 0.2, lengths=True),
-        Line("commutator-diameter", "mm", new, round(new - 2.0, 2), None, 2, "MIC-50", 0.45, 0.01, count=4, lengths=True),
+        Line(
+            "commutator-diameter", "mm", new, round(new - 2.0, 2), None, 2, "MIC-50", 0.45, 0.01, count=4, lengths=True
+        ),
         Line("commutator-runout", "mm", None, None, 0.05, 3, "DI-2", 0.9, 0.25, lengths=True),
         Line("undercut-depth", "mm", 0.7, 0.3, None, 2, "DEP-1", 0.6, 0.06, count=4, lengths=True),
     )
@@ -86,8 +125,32 @@ def _commutator(m: Model, new: float) -> tuple[Line, ...]:
 
 def _bearing(place: str, journal: float) -> tuple[Line, ...]:
     return (
-        Line(f"{place}-bore", "mm", round(journal + 0.03, 3), None, round(journal + 0.15, 3), 3, "BOR-1", 0.4, 0.05, count=4, lengths=True),
-        Line(f"{place}-journal", "mm", journal, round(journal - 0.07, 3), None, 3, "MIC-25", 0.3, 0.05, count=4, lengths=True),
+        Line(
+            f"{place}-bore",
+            "mm",
+            round(journal + 0.03, 3),
+            None,
+            round(journal + 0.15, 3),
+            3,
+            "BOR-1",
+            0.4,
+            0.05,
+            count=4,
+            lengths=True,
+        ),
+        Line(
+            f"{place}-journal",
+            "mm",
+            journal,
+            round(journal - 0.07, 3),
+            None,
+            3,
+            "MIC-25",
+            0.3,
+            0.05,
+            count=4,
+            lengths=True,
+        ),
         Line(f"{place}-clearance", "mm", None, 0.02, 0.2, 3, "", lengths=True),
     )
 
@@ -120,14 +183,28 @@ def _generator(m: Model) -> tuple[Line, ...]:
         Line("field-current", "A", None, round(1.4 / half, 2), round(2.0 / half, 2), 2, "AMM-1", 0.5, 0.1),
         Line("bearing-feel", "", None, None, None, 0, ""),
         Line("insulation-resistance", "Mohm", None, 1.0, None, 1, "INS-1", 0.4, 0.3),
-        Line("generator-output-current", "A", None, round(22 * s / half, 1), None, 1, "AMM-1", 0.7, 0.05, stage="as-left"),
+        Line(
+            "generator-output-current", "A", None, round(22 * s / half, 1), None, 1, "AMM-1", 0.7, 0.05, stage="as-left"
+        ),
     )
 
 
 def _alternator(m: Model) -> tuple[Line, ...]:
     s, half = m.size, m.volts / 14
     return (
-        Line("slip-ring-diameter", "mm", round(22 * s, 2), round(21.2 * s, 2), None, 2, "MIC-25", 0.4, 0.02, count=4, lengths=True),
+        Line(
+            "slip-ring-diameter",
+            "mm",
+            round(22 * s, 2),
+            round(21.2 * s, 2),
+            None,
+            2,
+            "MIC-25",
+            0.4,
+            0.02,
+            count=4,
+            lengths=True,
+        ),
         Line("slip-ring-runout", "mm", None, None, 0.05, 3, "DI-2", 0.5, 0.25, count=2, lengths=True),
         Line("rotor-resistance", "ohm", None, round(2.6 * half, 1), round(3.4 * half, 1), 2, "OHM-1", 0.5, 0.1),
         Line("rotor-ground", "", None, None, None, 0, "", count=2),
@@ -136,18 +213,50 @@ def _alternator(m: Model) -> tuple[Line, ...]:
         *_brushes(m)[:1],
         Line("bearing-feel", "", None, None, None, 0, ""),
         Line("insulation-resistance", "Mohm", None, 1.0, None, 1, "INS-1", 0.4, 0.3),
-        Line("regulated-voltage", "V", None, round(m.volts * 0.98, 1), round(m.volts * 1.03, 1), 2, "VOL-1", 0.5, 0.15, stage="as-left"),
-        Line("alternator-output-current", "A", None, round(80 * s / half), None, 0, "AMM-1", 0.7, 0.05, stage="as-left"),
+        Line(
+            "regulated-voltage",
+            "V",
+            None,
+            round(m.volts * 0.98, 1),
+            round(m.volts * 1.03, 1),
+            2,
+            "VOL-1",
+            0.5,
+            0.15,
+            stage="as-left",
+        ),
+        Line(
+            "alternator-output-current", "A", None, round(80 * s / half), None, 0, "AMM-1", 0.7, 0.05, stage="as-left"
+        ),
     )
 
 
-TESTS = {"growler-short", "armature-ground", "field-ground", "clutch-free", "bearing-feel", "rotor-ground", "stator-ground", "diode"}
+TESTS = {
+    "growler-short",
+    "armature-ground",
+    "field-ground",
+    "clutch-free",
+    "bearing-feel",
+    "rotor-ground",
+    "stator-ground",
+    "diode",
+}
 DERIVED = {"drive-end-clearance", "commutator-end-clearance"}
 GAUGES = (
     ("CAL-1", "caliper", "mm", "0.01", "0.03", "2", "2026-03-10", "2027-03-10", ""),
     ("CAL-2", "caliper", "mm", "0.01", "0.03", "2", "2026-03-10", "2027-03-10", "bench 2"),
     ("MIC-25", "outside micrometer", "mm", "0.001", "0.002", "2", "2026-02-02", "2027-02-02", ""),
-    ("MIC-50", "outside micrometer, disc anvils", "mm", "0.01", "0.006", "2", "2026-02-02", "2027-02-02", "commutators"),
+    (
+        "MIC-50",
+        "outside micrometer, disc anvils",
+        "mm",
+        "0.01",
+        "0.006",
+        "2",
+        "2026-02-02",
+        "2027-02-02",
+        "commutators",
+    ),
     ("MIC-1", "outside micrometer", "in", "0.0001", "0.0002", "2", "2026-02-02", "2027-02-02", ""),
     ("DI-1", "dial indicator", "mm", "0.01", "0.008", "2", "2026-05-20", "2027-05-20", ""),
     ("DI-2", "test indicator", "mm", "0.002", "0.003", "2", "2025-09-15", "2026-09-15", "overdue"),

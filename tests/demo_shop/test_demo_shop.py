@@ -42,7 +42,9 @@ def test_the_teaching_cases_stand(demo: Record, note: str, characteristic: str, 
     from store.sqlite.engine import rows
 
     with demo.read() as conn:
-        ((tag,),) = rows(conn, "SELECT j.tag FROM note n JOIN job j ON j.id = n.job_id WHERE n.text LIKE ?", (note + "%",))
+        ((tag,),) = rows(
+            conn, "SELECT j.tag FROM note n JOIN job j ON j.id = n.job_id WHERE n.text LIKE ?", (note + "%",)
+        )
     sheet = sheets.sheet(demo, tag, "as-found")
     assert sheet.row(characteristic).verdict.value == verdict
     if characteristic.endswith("clearance"):

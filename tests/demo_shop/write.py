@@ -56,7 +56,20 @@ def _limits() -> Iterable[tuple[object, ...]]:
             unit, new, low, high = _sizes(line, model.inch)
             at_limit = "fail" if line.characteristic == "brush-spring-force" else "pass"
             source = f"Hollow Lane sheet {number}, edition 2, page {1 + len(line.characteristic) % 3}"
-            yield model.number, line.characteristic, line.stage, unit, new, low, high, at_limit, line.count or "", rule, source, ""
+            yield (
+                model.number,
+                line.characteristic,
+                line.stage,
+                unit,
+                new,
+                low,
+                high,
+                at_limit,
+                line.count or "",
+                rule,
+                source,
+                "",
+            )
 
 
 def _sizes(line: Line, inch: bool) -> tuple[str, str, str, str]:

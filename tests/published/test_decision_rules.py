@@ -44,7 +44,15 @@ def test_one_sided_probability(d: str, pc: float) -> None:
 
 @pytest.mark.parametrize(
     ("d", "verdict"),
-    [("-1.651", "out"), ("-1.65", "out"), ("-1.649", "in doubt"), ("0", "in doubt"), ("1.649", "in doubt"), ("1.65", "in"), ("3", "in")],
+    [
+        ("-1.651", "out"),
+        ("-1.65", "out"),
+        ("-1.649", "in doubt"),
+        ("0", "in doubt"),
+        ("1.649", "in doubt"),
+        ("1.65", "in"),
+        ("3", "in"),
+    ],
 )
 def test_guarded_by_165_u(d: str, verdict: str) -> None:
     """ISO 14253-1:2017, default w = 1.65 u (secondary text): out only outside by w, in only inside by w."""
@@ -52,7 +60,9 @@ def test_guarded_by_165_u(d: str, verdict: str) -> None:
     assert judge([reading(str(float(F(10) + F(d) / 10)), "0.1")], Statistic.smallest, limit).verdict == verdict
 
 
-@pytest.mark.parametrize(("value", "verdict"), [("0.002", "in"), ("0.0017", "in"), ("0.0025", "in doubt"), ("0.0041", "out")])
+@pytest.mark.parametrize(
+    ("value", "verdict"), [("0.002", "in"), ("0.0017", "in"), ("0.0025", "in doubt"), ("0.0041", "out")]
+)
 def test_micrometer_guarded_by_u(value: str, verdict: str) -> None:
     """A public laboratory page (secondary): permitted error +-0.003 mm, U 0.0010: accept up to 0.002 (ILAC-G8, w = U)."""
     limit = Limit("mm", None, F("-0.003"), F("0.003"), rule=Rule.guarded_u)

@@ -47,7 +47,10 @@ def worn(record: Record, tmp_path: Path) -> str:
 
 def test_both_parts_in_the_fit_out(record: Record, worn: str) -> None:
     """Bearing 0.8780 and shaft 0.8670 sit at their wear limits and pass; their fit is 0.0110 loose and fails."""
-    found = {v["characteristic"]: v for v in verdicts.as_json([sheets.sheet(record, worn, "as-found")])["stages"]["as-found"]["verdicts"]}
+    found = {
+        v["characteristic"]: v
+        for v in verdicts.as_json([sheets.sheet(record, worn, "as-found")])["stages"]["as-found"]["verdicts"]
+    }
     assert (found["center-bore"]["verdict"], found["center-journal"]["verdict"]) == ("in", "in")
     fit = found["center-clearance"]
     assert (fit["verdict"], fit["value"], fit["unit"]) == ("out", "0.011", "in")
@@ -58,7 +61,9 @@ def test_the_same_by_command_and_in_the_pdf(record: Record, worn: str) -> None:
     """JSON of the command and text of the PDF say what the sheet says."""
     from tui.commands import cli
 
-    done = CliRunner().invoke(cli, ["judge", worn, "--stage", "as-found", "--json", "--record", str(record.path)], catch_exceptions=False)
+    done = CliRunner().invoke(
+        cli, ["judge", worn, "--stage", "as-found", "--json", "--record", str(record.path)], catch_exceptions=False
+    )
     said = {v["characteristic"]: v["verdict"] for v in json.loads(done.output)["stages"]["as-found"]["verdicts"]}
     assert (said["center-bore"], said["center-journal"], said["center-clearance"]) == ("in", "in", "out")
     text = "".join(page.extract_text() for page in pypdf.PdfReader(BytesIO(pdf.draw(gather.draft(record, worn)))).pages)
@@ -81,10 +86,15 @@ async def test_the_same_on_the_screen(record: Record, worn: str) -> None:
 
 def _clearances(bores: list[str], journals: list[str], unit: str) -> tuple[Fraction, Fraction]:
     """The tightest and the loosest fit of parts within their limits."""
-    sizes = {name: [Measured(str(n), parse(text, Quantity.length, unit)) for n, text in enumerate(texts)] for name, texts in (("b", bores), ("j", journals))}
+    sizes = {
+        name: [Measured(str(n), parse(text, Quantity.length, unit)) for n, text in enumerate(texts)]
+        for name, texts in (("b", bores), ("j", journals))
+    }
     loose = derived.judge("clearance b j", sizes, None).value
     assert loose is not None
-    tight = min(m.typed.value for m in sizes["b"] if m.typed.value is not None) - max(m.typed.value for m in sizes["j"] if m.typed.value is not None)
+    tight = min(m.typed.value for m in sizes["b"] if m.typed.value is not None) - max(
+        m.typed.value for m in sizes["j"] if m.typed.value is not None
+    )
     return tight, loose
 
 

@@ -122,7 +122,9 @@ async def test_a_missing_limit_is_entered_in_place(path: Path) -> None:
         record = pilot.app.record
         sheet = limit_sheets.sheet(record, "KG-200")
         assert sheet is not None
-        assert [(x.characteristic, x.low, x.source) for x in sheet.limits] == [("brush-length", "9.5", "torn book, page 3")]
+        assert [(x.characteristic, x.low, x.source) for x in sheet.limits] == [
+            ("brush-length", "9.5", "torn book, page 3")
+        ]
         assert jobs.find(record, "1001").revision == 1
 
 
@@ -165,7 +167,9 @@ async def test_hostile_text_on_every_screen(path: Path) -> None:
     notes.add(record, job.tag, text)
     readings.add(record, job.tag, "as-found", "growler-short", f"fail {text}", note=text)
     readings.add(record, job.tag, "as-found", "commutator-runout", f"not measured {text}")
-    limit_sheets.enter(record, "KS-100", [limit_sheets.LimitEntry("shaft-runout", text, high="0.08", note=text)], why=text)
+    limit_sheets.enter(
+        record, "KS-100", [limit_sheets.LimitEntry("shaft-runout", text, high="0.08", note=text)], why=text
+    )
     jobs.move_to_revision(record, job.tag)
     record.close()
     async with opened(path) as pilot:

@@ -42,7 +42,9 @@ def test_a_burst_fills_cells_in_order(values: list[str], data: st.DataObject) ->
         typed += slip + value + data.draw(st.sampled_from("\r\n\t"))
     made = feed(keying, typed)
     places = [(row, column) for row, width in enumerate(widths) for column in range(width)]
-    assert [(s.row, s.column, s.text) for s in made] == [(*place, value) for place, value in zip(places, values, strict=False)]
+    assert [(s.row, s.column, s.text) for s in made] == [
+        (*place, value) for place, value in zip(places, values, strict=False)
+    ]
 
 
 def test_pasted_lines_are_typed() -> None:
