@@ -91,7 +91,7 @@ def size(name: str, text: str, unit: str = "mm") -> Size:
 
 def _of_other_quantity(text: str, first: Quantity) -> readings.Typed:
     """A size whose own unit is of another quantity than lengths: `force=8 N`. Raises ReadingRefused."""
-    for quantity in (Quantity.force, Quantity.voltage, Quantity.resistance, Quantity.angle):
+    for quantity in (Quantity.force, Quantity.voltage, Quantity.resistance, Quantity.torque):
         try:
             return readings.parse(text, quantity, quantities.units_of(quantity)[0].symbol)
         except ReadingRefused:

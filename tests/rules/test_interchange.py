@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import pairwise
 
 import pytest
 from hypothesis import given
@@ -172,7 +173,7 @@ def test_of_any_path(lines: list[tuple[int, Relation, int, str]], start: int) ->
         path = answer.path
         assert path[0].start == start
         assert path[-1].end == answer.number
-        assert all(a.end == b.start for a, b in zip(path, path[1:], strict=False))
+        assert all(a.end == b.start for a, b in pairwise(path))
         assert sum(bool(s.stated.caveat) or s.stated.relation is SUBSTITUTE for s in path) <= 1
         assert not any(s.stated.relation in LAST for s in path[:-1])
         for step in path:
