@@ -18,7 +18,9 @@ FILTERS = ("model", "since", "until", "stage", "verdict", "comeback", "by", "in"
 NO_WORD = "type a word to look for"
 
 _PART = re.compile(
-    r"""(?P<minus>(?<!\S)-)? (?: "(?P<phrase>[^"]*)(?:"|$) | (?P<name>[a-zA-Z]+):(?:"(?P<quoted>[^"]*)(?:"|$)|(?P<value>[^\s"]+)) | (?P<word>[^\s"]+) )""",
+    r"""(?P<minus>(?<!\S)-)? (?: "(?P<phrase>[^"]*)(?:"|$)
+    | (?P<name>[a-zA-Z]+):(?:"(?P<quoted>[^"]*)(?:"|$)|(?P<value>[^\s"]+))
+    | (?P<word>[^\s"]+) )""",
     re.VERBOSE,
 )
 

@@ -8,12 +8,12 @@ from __future__ import annotations
 
 import re
 import unicodedata
-from bisect import bisect_right
-from dataclasses import dataclass
+from collections.abc import Iterator
 from functools import lru_cache
+from operator import itemgetter
+from typing import NamedTuple
 
 LONGEST = 64
-LAST_PLACE = 65_535
 SHORTEST_KEY = 4
 
 _PLAIN = re.compile(r"[a-z0-9]+(?:'[a-z0-9]+)*")
@@ -24,8 +24,7 @@ _LEFT_OUT = re.compile(r"['\u2019\u0300-\u036f]")
 _DIGIT = re.compile(r"[0-9]")
 
 
-@dataclass(frozen=True, slots=True)
-class Token:
+class Token(NamedTuple):
     """One word: as compared, where it stands among the words (`place`, from 0), and `start` to `end` in the text.
 
     A part number of several pieces gives each piece and, at the place of the first, the whole by its comparing key.
@@ -42,12 +41,16 @@ def indexed(text: str) -> list[tuple[str, int]]:
     if not text.isascii():
         return [(token.word, token.place) for token in tokens(text)]
     folded = text.lower()
-    if _DIGIT.search(folded):
-        return [(token.word, token.place) for token in _found(folded, _PLAIN)]
     pieces = _PLAIN.findall(folded)
-    if "'" in folded:
-        pieces = [piece.replace("'", "") for piece in pieces]
-    return [(piece[:LONGEST], place if place < LAST_PLACE else LAST_PLACE) for place, piece in enumerate(pieces)]
+    if not _DIGIT.search(folded):
+        if "'" in folded:
+            pieces = [piece.replace("'", "") for piece in pieces]
+        return [(piece[:LONGEST], place) for place, piece in enumerate(pieces)]
+    made = [(_compared(piece), place) for place, piece in enumerate(pieces)]
+    if _RUN.search(folded):
+        made += [(key, len(_PLAIN.findall(folded[:start]))) for key, start, _ in _joined(folded)]
+        made.sort(key=itemgetter(1))
+    return made
 
 
 def tokens(text: str) -> list[Token]:
@@ -71,10 +74,7 @@ def has_digit(word: str) -> bool:
 
 
 def _found(folded: str, pattern: re.Pattern[str]) -> list[Token]:
-    made = [
-        Token(_compared(m.group()), min(place, LAST_PLACE), m.start(), m.end())
-        for place, m in enumerate(pattern.finditer(folded))
-    ]
+    made = [Token(_compared(m.group()), place, m.start(), m.end()) for place, m in enumerate(pattern.finditer(folded))]
     made = [token for token in made if token.word]
     if _DIGIT.search(folded):
         made += _keys(folded, made)
@@ -84,14 +84,15 @@ def _found(folded: str, pattern: re.Pattern[str]) -> list[Token]:
 
 def _keys(folded: str, pieces: list[Token]) -> list[Token]:
     """Joined part numbers: "123-45678" is one number, whatever separates its pieces."""
-    starts = [piece.start for piece in pieces]
-    made = []
+    places = {piece.start: piece.place for piece in pieces}
+    return [Token(key, places[start], start, end) for key, start, end in _joined(folded) if start in places]
+
+
+def _joined(folded: str) -> Iterator[tuple[str, int, int]]:
     for run in _RUN.finditer(folded):
         text = _JOINT.sub("", run.group())
-        if len(text) >= SHORTEST_KEY and has_digit(text) and starts:
-            first = pieces[max(0, bisect_right(starts, run.start()) - 1)]
-            made.append(Token(_compared(text), first.place, run.start(), run.end()))
-    return made
+        if len(text) >= SHORTEST_KEY and has_digit(text):
+            yield _compared(text), run.start(), run.end()
 
 
 def _compared(word: str) -> str:

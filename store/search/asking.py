@@ -82,18 +82,18 @@ def _hits(
     conn: Connection, picked: Sequence[tuple[int, int]], matches: Sequence[Match], phrases: Sequence[Sequence[str]]
 ) -> tuple[Hit, ...]:
     """The texts themselves, in the order in which they were picked."""
-    known = {}
+    known: dict[tuple[int, int], tuple[str, ...]] = {}
     for n, source in enumerate(sources.SOURCES):
         which = [row for number, row in picked if number == n]
         for at in range(0, len(which), 500):
-            for row, *values in _read(conn, source, which[at : at + 500]):
-                known[n, row] = values
+            for which_row, *values in _read(conn, source, which[at : at + 500]):
+                known[n, which_row] = tuple(values)
     words = {word for one in matches for word in one.costs}
     made = []
     for n, row in picked:
         if (n, row) in known:
-            tag, model, at, by, text = known[n, row]
-            made.append(Hit(tag, model, at, by, sources.SOURCES[n].where, row, text, marks(text, words, phrases)))
+            tag, model, moment, by, said = known[n, row]
+            made.append(Hit(tag, model, moment, by, sources.SOURCES[n].where, row, said, marks(said, words, phrases)))
     return tuple(made)
 
 
@@ -113,14 +113,16 @@ def marks(text: str, words: set[str], phrases: Sequence[Sequence[str]]) -> tuple
     found = tokens(text)
     spans = [(token.start, token.end) for token in found if token.word in words]
     by_place: dict[int, set[str]] = {}
-    ends = {}
+    ends: dict[int, tuple[int, int]] = {}
     for token in found:
         by_place.setdefault(token.place, set()).add(token.word)
         ends.setdefault(token.place, (token.start, token.end))
     for phrase in phrases:
-        for place in by_place:
-            if all(word in by_place.get(place + n, ()) for n, word in enumerate(phrase)):
-                spans.append((ends[place][0], ends[place + len(phrase) - 1][1]))
+        spans += [
+            (ends[place][0], ends[place + len(phrase) - 1][1])
+            for place in by_place
+            if all(word in by_place.get(place + n, ()) for n, word in enumerate(phrase))
+        ]
     merged: list[tuple[int, int]] = []
     for start, end in sorted(set(spans), key=lambda s: (s[0], -s[1])):
         if not merged or start >= merged[-1][1]:

@@ -26,12 +26,12 @@ _YES, _NO = {"yes", "y", "true", "1"}, {"no", "n", "false", "0"}
 def wanted(record: Record, conn: Connection, shelf: Shelf, filters: Mapping[str, str]) -> NDArray[np.bool_]:
     """For each text whether it stands and passes every filter. Raises Refused (no such value), NotFound (model)."""
     lines = shelf.lines
-    made = lines["stands"].copy()
+    made = shelf.standing()
     given = {name: value for name, value in filters.items() if value}
     if "since" in given:
         made &= lines["at"] >= _seconds(given["since"], "since")
     if "until" in given:
-        made &= lines["at"] < _seconds(given["until"], "until", days=1)
+        made &= lines["at"] < _seconds(given["until"], "until", end=True)
     if "by" in given:
         exact, loud = shelf.person(given["by"]), shelf.person(given["by"].upper())
         made &= lines["by"] == (exact if exact is not None else loud if loud is not None else NOBODY)
@@ -40,7 +40,7 @@ def wanted(record: Record, conn: Connection, shelf: Shelf, filters: Mapping[str,
     jobs = _jobs(record, conn, given)
     if jobs is not None:
         made &= jobs[np.minimum(lines["job"], len(jobs) - 1)]
-    return made  # type: ignore[no-any-return]
+    return made
 
 
 def _jobs(record: Record, conn: Connection, given: Mapping[str, str]) -> NDArray[np.bool_] | None:
@@ -63,7 +63,7 @@ def _jobs(record: Record, conn: Connection, given: Mapping[str, str]) -> NDArray
         judged.append("g.verdict = ?")
         values.append(_one_of(given["verdict"].replace("-", " "), tuple(v.value for v in Verdict), "verdict"))
     if judged:
-        where.append(f"EXISTS (SELECT 1 FROM judgement g WHERE g.job_id = j.id AND {' AND '.join(judged)})")
+        where.append(f"EXISTS (SELECT 1 FROM judgement g WHERE g.job_id = j.id AND {' AND '.join(judged)})")  # noqa: S608
     if not where:
         return None
     found = [r[0] for r in rows(conn, f"SELECT j.id FROM job j WHERE {' AND '.join(where)}", values)]  # noqa: S608
@@ -93,12 +93,17 @@ def _is_yes(value: str) -> bool:
     raise Refused(f"comeback is yes or no, not {brief(value)!r}")
 
 
-def _seconds(value: str, name: str, days: int = 0) -> int:
-    """The moment a date (or year, or month) begins, `days` later; it may be cut short while it is typed."""
+def _seconds(value: str, name: str, *, end: bool = False) -> int:
+    """The moment at which a year, a month, a day or a time of day begins; with `end` the first moment after it."""
     try:
-        whole = value if len(value) > 7 else f"{value}-01-01" if len(value) == 4 else f"{value}-01"
-        at = datetime.fromisoformat(whole)
-        at = (at if at.tzinfo else at.replace(tzinfo=UTC)) + timedelta(days=days)
+        if len(value) == 4:
+            at = datetime(int(value) + end, 1, 1, tzinfo=UTC)
+        elif len(value) == 7:
+            first = datetime.fromisoformat(f"{value}-01")
+            at = datetime(first.year + (first.month + end > 12), (first.month - 1 + end) % 12 + 1, 1, tzinfo=UTC)
+        else:
+            said = datetime.fromisoformat(value)
+            at = (said if said.tzinfo else said.replace(tzinfo=UTC)) + timedelta(days=end and len(value) == 10)
         return min(max(int(at.timestamp()), 0), 2**32 - 1)
     except (ValueError, OverflowError):
         raise Refused(f"{name} is a date such as 2026-03-01, not {brief(value)!r}") from None

@@ -39,7 +39,7 @@ class Index:
     def catch_up(self, conn: Connection) -> int:
         """Take in what was written, changed or deleted since; returns how many texts that was."""
         now = sources.newest(conn)
-        if now == self.reach:
+        if now == self.reach or self._is_ahead(now):
             return 0
         done = 0
         if now[-1] > self.reach[-1]:
@@ -54,6 +54,14 @@ class Index:
         if self.postings.new_entries > max(20 * MANY, len(self.postings.texts) // 20):
             self.postings.fold_in(len(self.lexicon))
         return done
+
+    def _is_ahead(self, now: list[int]) -> bool:
+        """Whether another thread has brought the index further than `now`, the state that this one's transaction sees.
+
+        The log only grows, and rows that went away are in it: fewer rows with no more log is an earlier state.
+        """
+        fewer = any(seen < known for seen, known in zip(now, self.reach, strict=True))
+        return now[-1] < self.reach[-1] or (now[-1] == self.reach[-1] and fewer)
 
     def _add(self, source: int, row: int, job: int, at: int, by: str, text: str) -> None:
         number = self.shelf.add(source, row, job or 0, at, by or "", text)
@@ -84,19 +92,19 @@ class Index:
 def build(conn: Connection, tell: Tell | None = None) -> Index:
     """A new index of everything in the record. `tell` hears how many texts are in, now and then."""
     made, building = Index(), Building()
-    lexicon, shelf = made.lexicon, made.shelf
-    number_of, count = lexicon.number, lexicon.count
+    shelf = made.shelf
+    numbers: dict[str, int] = {}
+    number_of = numbers.setdefault
     made.reach = sources.newest(conn)
     for n, source in enumerate(sources.SOURCES):
         for row, job, at, by, text in sources.past(conn, source, 0):
             found = indexed(text)
-            words = [number_of(word) for word, _ in found]
-            for which in set(words):
-                count(which, 1)
+            words = [number_of(word, len(numbers)) for word, _ in found]
             building.add(words, shelf.add(n, row, job or 0, at, by or "", text), [place for _, place in found])
             if tell is not None and len(shelf) % 10_000 == 0:
                 tell("index", len(shelf))
-    made.postings = building.postings(len(lexicon))
+    made.postings = building.postings(len(numbers))
+    made.lexicon = Lexicon(numbers, made.postings.frequencies())
     made.unsaved = len(shelf)
     return made
 
@@ -151,7 +159,7 @@ def differences(index: Index, fresh: Index) -> list[str]:
 
 
 def _texts(index: Index) -> dict[tuple[int, int], tuple[int, int, int]]:
-    lines = index.shelf.lines[index.shelf.lines["stands"]]
+    lines = index.shelf.lines[index.shelf.standing()]
     return {
         (source, row): (job, at, checked)
         for row, job, at, checked, source in zip(
@@ -164,14 +172,14 @@ def _entries(index: Index) -> int:
     """A checksum over every entry of a standing text, whatever the order of words and texts."""
     import zlib
 
-    lines, total = index.shelf.lines, 0
+    lines, stands, total = index.shelf.lines, index.shelf.standing(), 0
     mixed = (lines["row"].astype(np.uint64) * np.uint64(8) + lines["source"]) * np.uint64(0x9E3779B97F4A7C15)
     for number, word in enumerate(index.lexicon.words):
         texts, places = index.postings.of(number)
-        stands = lines["stands"][texts]
-        if not stands.any():
+        kept = stands[texts]
+        if not kept.any():
             continue
-        each = (mixed[texts[stands]] ^ places[stands].astype(np.uint64)) * np.uint64(0xC2B2AE3D27D4EB4F)
+        each = (mixed[texts[kept]] ^ places[kept].astype(np.uint64)) * np.uint64(0xC2B2AE3D27D4EB4F)
         salt = zlib.crc32(word.encode()) * 2 + 1
         total = (total + int((each ^ (each >> np.uint64(29))).sum(dtype=np.uint64)) * salt) % (1 << 64)
     return total

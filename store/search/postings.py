@@ -46,6 +46,16 @@ class Postings:
             np.concatenate([places, np.array(new[1], np.uint16)]),
         )
 
+    def frequencies(self) -> NDArray[np.int32]:
+        """In how many texts each word stands, by its number; of the flat arrays alone."""
+        made = np.zeros(len(self.starts) - 1, np.int64)
+        for start in range(0, len(self.texts), RUN):
+            at = np.arange(start, min(start + RUN, len(self.texts)))
+            word = np.searchsorted(self.starts, at, side="right") - 1
+            is_again = (self.texts[at] == self.texts[at - 1]) & (at != self.starts[word])
+            made += np.bincount(word[~is_again], minlength=len(made))
+        return made.astype(np.int32)
+
     def words_of(self, text: int) -> list[int]:
         """The numbers of the words that stand in a text."""
         at = np.flatnonzero(self.texts == np.uint32(text))
@@ -55,6 +65,8 @@ class Postings:
 
     def fold_in(self, words: int) -> None:
         """Move what has come since into the flat arrays; `words` is how many words there are now."""
+        if not self._new and words == len(self.starts) - 1:
+            return
         counts = np.zeros(words, np.int64)
         counts[: len(self.starts) - 1] = np.diff(self.starts)
         known = counts.copy()
@@ -63,10 +75,12 @@ class Postings:
         starts = np.zeros(words + 1, np.int64)
         np.cumsum(counts, out=starts[1:])
         all_texts, all_places = np.empty(starts[-1], np.uint32), np.empty(starts[-1], np.uint16)
-        if len(self.texts):
-            shift = np.repeat(starts[:-1][: len(self.starts) - 1] - self.starts[:-1], np.diff(self.starts))
-            where = np.arange(len(self.texts)) + shift
-            all_texts[where], all_places[where] = self.texts, self.places
+        shift = starts[: len(self.starts) - 1] - self.starts[:-1]
+        for start in range(0, len(self.texts), RUN):  # piece by piece, so that memory stays flat
+            end = min(start + RUN, len(self.texts))
+            at = np.arange(start, end)
+            at += shift[np.searchsorted(self.starts, at, side="right") - 1]
+            all_texts[at], all_places[at] = self.texts[start:end], self.places[start:end]
         for word, (texts, places) in self._new.items():
             first = int(starts[word] + known[word])
             all_texts[first : first + len(texts)] = texts

@@ -24,7 +24,7 @@ from store.search.postings import Postings
 from store.search.shelf import LINE, Shelf
 from store.sqlite.engine import rows
 
-FORMAT = "wearline words 1"
+FORMAT = "wearline words 2"
 MOST_HEADER = 4_000_000
 
 
@@ -34,7 +34,7 @@ def save(index: Index, path: Path, head: tuple[int, str]) -> bool:
     words = "\n".join(index.lexicon.words).encode()
     summed = zlib.crc32(words)
     for array in arrays:
-        summed = zlib.crc32(np.ascontiguousarray(array).view(np.uint8), summed)
+        summed = zlib.crc32(np.ascontiguousarray(array).view(np.uint8).data, summed)
     header = {
         "format": FORMAT, "reach": index.reach, "sources": [s.table for s in sources.SOURCES], "head": head,
         "people": index.shelf.people, "words": len(words), "arrays": [[a.dtype.str, len(a)] for a in arrays[:-1]],
@@ -64,7 +64,7 @@ def load(path: Path, conn: Connection) -> Index | None:
             arrays: list[NDArray[Any]] = []
             for kind, count in kinds:
                 array = np.fromfile(file, kind, count)
-                summed = zlib.crc32(array.view(np.uint8), summed)
+                summed = zlib.crc32(array.view(np.uint8).data, summed)
                 arrays.append(array)
             if summed != header["sum"] or file.read(1):
                 return None

@@ -83,7 +83,7 @@ def newest(conn: Connection) -> list[int]:
 @lru_cache(maxsize=1)
 def _newest() -> str:
     parts = [f"(SELECT max(id) FROM {source.table})" for source in SOURCES]  # noqa: S608
-    return f"SELECT {', '.join(parts)}, (SELECT max(id) FROM text_change)"
+    return f"SELECT {', '.join(parts)}, (SELECT max(id) FROM text_change)"  # noqa: S608
 
 
 def changed(conn: Connection, last: int) -> list[tuple[int, int]]:

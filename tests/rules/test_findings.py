@@ -33,7 +33,7 @@ def test_looks_like(note: str, component: str, mode: str) -> None:
 )
 def test_nothing_is_forced(note: str) -> None:
     """What is well, denied or not spoken of is not offered."""
-    assert () == offered(note)
+    assert offered(note) == ()
 
 
 def test_two_clauses() -> None:
@@ -45,11 +45,11 @@ def test_two_clauses() -> None:
 def test_own_findings() -> None:
     """The shop's own findings are offered as well, and its usual mechanism and cause are taken over."""
     own = (Finding("solenoid", "contacts burned", "electrical", "overload"), Finding("tag", "soaked", "oil", "leak"))
-    assert ("electrical", "overload") == (
+    assert (
         offered("sol contacts burnt", own)[0].mechanism,
         offered("sol contacts burnt", own)[0].cause,
-    )
-    assert [("tag", "soaked")] == [(f.component, f.mode) for f in offered("tag soaked", own)]
+    ) == ("electrical", "overload")
+    assert [(f.component, f.mode) for f in offered("tag soaked", own)] == [("tag", "soaked")]
 
 
 @pytest.mark.parametrize("finding", VOCABULARY, ids=lambda f: f"{f.component}-{f.mode}")

@@ -9,16 +9,18 @@ from store.rules.words import indexed
 def test_own_lines_over_shipped() -> None:
     """The shop's line wins, an empty one takes a shipped one out, and the shipped list stays as it is."""
     made = together({"comm": "communicator", "sol": "", "hm": "hammer"})
-    assert ("communicator", "hammer") == (made["comm"], made["hm"])
+    assert (made["comm"], made["hm"]) == ("communicator", "hammer")
     assert "sol" not in made
-    assert "commutator" == SHIPPED["comm"]
+    assert SHIPPED["comm"] == "commutator"
 
 
 def test_all_that_mean_the_same() -> None:
     """Two shorts of one long word find each other."""
-    assert {"gnd": ("grnd", "ground"), "grnd": ("gnd", "ground"), "ground": ("gnd", "grnd")} == groups(
-        {"gnd": "ground", "grnd": "ground"}
-    )
+    assert groups({"gnd": "ground", "grnd": "ground"}) == {
+        "gnd": ("grnd", "ground"),
+        "grnd": ("gnd", "ground"),
+        "ground": ("gnd", "grnd"),
+    }
 
 
 def test_shipped_are_single_words() -> None:

@@ -53,21 +53,21 @@ def test_common_slips(a: str, b: str, common: bool) -> None:
 def test_frequent_neighbours_win() -> None:
     """At equal distance the more frequent word is likelier; one far less frequent than the asked word is none."""
     near = [Neighbour("torn", 3, 1), Neighbour("worn", 900, 1), Neighbour("horn", 1, 1)]
-    assert ["worn"] == [n.word for n in corrections("wworn", 0, near, 4, 0.3)]
-    assert [] == corrections("worm", 500, near, 4, 0.3)
+    assert [n.word for n in corrections("wworn", 0, near, 4, 0.3)] == ["worn"]
+    assert corrections("worm", 500, near, 4, 0.3) == []
 
 
 def test_a_known_word_is_never_corrected() -> None:
     """The trade's own word stays; a word that is not may be corrected to it though it is as frequent."""
     known = frozenset({"bushing"})
-    assert [] == corrections("bushing", 1, [Neighbour("bushng", 900, 1)], 4, 0.3, known)
-    assert ["bushing"] == [n.word for n in corrections("bushng", 20, [Neighbour("bushing", 2, 1)], 4, 0.3, known)]
+    assert corrections("bushing", 1, [Neighbour("bushng", 900, 1)], 4, 0.3, known) == []
+    assert [n.word for n in corrections("bushng", 20, [Neighbour("bushing", 2, 1)], 4, 0.3, known)] == ["bushing"]
 
 
 def test_rare_neighbours_are_slips() -> None:
     """Asked right, rare words nearby are slips of it; frequent ones and known ones are words of their own."""
     near = [Neighbour("wron", 2, 1), Neighbour("torn", 400, 1), Neighbour("worm", 1, 1)]
-    assert ["wron"] == [n.word for n in slips_of("worn", 1000, near, 9, frozenset({"worm"}))]
+    assert [n.word for n in slips_of("worn", 1000, near, 9, frozenset({"worm"}))] == ["wron"]
 
 
 def test_liking_prefers_the_same_consonants() -> None:
