@@ -54,7 +54,7 @@ _NEXT = {
     "taken in": "strip and measure",
     "stripped": "plan the rework",
     "on rework": "measure as left",
-    "to inspect": "inspect and release",
+    "to inspect": "inspect, release",
 }
 
 

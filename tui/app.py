@@ -88,6 +88,17 @@ class Wearline(App[None]):
             return
         self.call_from_thread(setattr, self, "theme", theme)
         self.post_message(self.Opened(record))
+        self._keep_a_backup(record)
+
+    def _keep_a_backup(self, record: Record) -> None:
+        """One backup a day, beside the record; that it failed is said, and nothing else waits for it."""
+        from store import backups
+        from store.errors import WearlineError
+
+        try:
+            backups.daily(record)
+        except WearlineError as fault:
+            self.call_from_thread(self.notify, f"no backup today: {fault}", severity="warning", markup=False)
 
     def on_wearline_opened(self, message: Opened) -> None:
         """Start the writer and tell every screen."""

@@ -11,6 +11,7 @@ from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.widgets import Input, Static
 
+from tui.screens.places import PLACES
 from tui.screens.standing import Standing
 from tui.widgets.listing import Column, Item, Listing
 
@@ -28,10 +29,9 @@ class Bench(Standing):
     )
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("f2", "take_in", "take in"),
-        Binding("f3", "ended", "ended too", tooltip="show jobs that have ended too, or only open ones"),
+        Binding("f3", "ended", "ended", tooltip="show jobs that have ended too, or only open ones"),
         Binding("f4", "who", "who", tooltip="say who works here now"),
-        Binding("f5", "app.go('limits')", "limits"),
-        Binding("f9", "app.go('gauges')", "gauges"),
+        *(Binding(p.key, f"app.go('{name}')", p.title.lower(), show=False) for name, p in PLACES.items() if p.key),
     ]
 
     def __init__(self) -> None:
@@ -45,9 +45,9 @@ class Bench(Standing):
         yield Static("opening the record ...", id="counts", markup=False)
         listing = Listing(
             [
-                Column("tag", 7), Column("model", 12), Column("serial", 10), Column("customer", 0), Column("stands", 10),
+                Column("tag", 6), Column("model", 9), Column("serial", 9), Column("customer", 0), Column("stands", 10),
                 Column("days", 4, right=True), Column("out", 3, right=True), Column("?", 2, right=True),
-                Column("next", 18, quiet=True),
+                Column("next", 17, quiet=True),
             ],
             empty="no job here; F2 takes in a core",
             id="jobs",
@@ -56,6 +56,7 @@ class Bench(Standing):
         listing.follows_input = True  # type: ignore[attr-defined]
         listing.waiting = True
         yield listing
+        yield Static("  ".join(f"{p.key.upper()} {p.title.lower()}" for p in PLACES.values() if p.key), id="places", markup=False)
 
     def on_mount(self) -> None:
         """Look for what others have written, twice a second."""

@@ -53,10 +53,10 @@ class JobScreen(Standing):
         Binding("escape", "back", "bench"),
     ]
 
-    def __init__(self, tag: str) -> None:
+    def __init__(self, tag: str, stage: str = "as-found", characteristic: str = "", pane: str = "sheet") -> None:
         super().__init__()
-        self.tag = tag
-        self.stage = "as-found"
+        self.tag, self.stage = tag, stage
+        self.wanted, self.wanted_pane = characteristic, pane
         self.sheet: Any = None
         self.gauges: dict[str, str] = {}
         self.questions: dict[tuple[str, str, str], str] = {}
@@ -119,8 +119,18 @@ class JobScreen(Standing):
         if is_through and not any(c.state is State.empty for r in rows if r.is_asked for c in r.cells):
             widget.keying.at = None
         widget.keying.aside, widget.keying.last = aside, last if before == [row.name for row in rows] else []
+        self._go_where_wanted(widget)
         self.say_where()
         self.explain()
+
+    def _go_where_wanted(self, widget: ReadingSheet) -> None:
+        """Stand on the row, or open the pane, that the screen was opened for; once."""
+        row = self._row_of(self.wanted) if self.wanted else None
+        if row is not None and widget.keying.rows[row].cells:
+            widget.stand(row)
+        pane, self.wanted, self.wanted_pane = self.wanted_pane, "", "sheet"
+        if pane != "sheet" and pane in PANES:
+            self.show_pane(pane)
 
     def look_again(self) -> None:
         """Show what another screen wrote, when nothing of ours is under way."""

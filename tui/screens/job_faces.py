@@ -25,7 +25,9 @@ def rows(sheet: Any, refused: Mapping[tuple[str, str], Cell]) -> list[Row]:
     made = []
     for row in sheet.rows:
         cells = [
-            Cell(place, shown(reading), State.accepted) if reading else refused.get((row.characteristic.name, place), Cell(place))
+            Cell(place, shown(reading), State.accepted)
+            if reading
+            else refused.get((row.characteristic.name, place), Cell(place))
             for place, reading in zip(row.positions, row.readings, strict=True)
         ]
         is_test = row.characteristic.statistic.value == "attribute"

@@ -9,21 +9,27 @@ from typing import Any
 
 @dataclass(frozen=True, slots=True)
 class Place:
-    """A screen: where its class is, its title and what the palette says of it. `needs_more`: opened with a tag or so."""
+    """A screen: where its class is, its title and what the palette says of it.
+
+    `key` opens it from the bench; `needs_more`: it is opened with a tag or so, never alone.
+    """
 
     module: str
     name: str
     title: str
     says: str
+    key: str = ""
     needs_more: bool = False
 
 
 PLACES = {
     "bench": Place("tui.screens.bench", "Bench", "Bench", "open jobs, and taking in a core"),
     "job": Place("tui.screens.job", "JobScreen", "Job", "one job: sheet, notes, history", needs_more=True),
-    "limits": Place("tui.screens.limits", "Limits", "Limits", "wear limits of a model, with their sources"),
+    "limits": Place("tui.screens.limits", "Limits", "Limits", "wear limits of a model, with their sources", "f5"),
     "report": Place("tui.screens.report", "ReportPreview", "Report", "a report as it will print", needs_more=True),
-    "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall"),
+    "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall", "f9"),
+    "release": Place("tui.screens.release", "Release", "Release", "what stands in the way, and the signature", "f10"),
+    "record": Place("tui.screens.record", "RecordPlace", "Record", "the file: verify, backup, restore, export", "f12"),
 }
 
 

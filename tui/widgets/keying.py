@@ -141,7 +141,9 @@ class Keying:
     @property
     def where(self) -> tuple[str, str] | None:
         """The names of row and position under the cursor, which hold when the sheet is read anew."""
-        return None if self.at is None else (self.rows[self.at[0]].name, self.rows[self.at[0]].cells[self.at[1]].position)
+        return (
+            None if self.at is None else (self.rows[self.at[0]].name, self.rows[self.at[0]].cells[self.at[1]].position)
+        )
 
     def stand(self, where: tuple[str, str]) -> None:
         """Stand on the cell of these names, where there is one."""

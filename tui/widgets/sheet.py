@@ -104,6 +104,10 @@ class ReadingSheet(ScrollView, can_focus=True):
         self.keying.undo()
         self._settle(())
 
+    def stand(self, row: int) -> None:
+        """Stand on the first cell of a row."""
+        self._settle(self.keying.go(row, 0))
+
     def close_buffer(self) -> None:
         """Submit what is being typed, as before leaving the screen."""
         if self.keying.buffer and self.keying.at is not None:
