@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Callable, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, ClassVar
 
-from textual.app import App, SystemCommand
+from textual.app import App
 from textual.binding import Binding, BindingType
 from textual.message import Message
-from textual.screen import Screen
+from textual.screen import ModalScreen
 
 from tui.screens.places import PLACES, load
 from tui.theme import THEMES
@@ -17,6 +17,7 @@ from tui.writer import Order, Writer
 
 if TYPE_CHECKING:
     from store.records import Record
+    from tui.screens.palette import Choice
 
 
 class Wearline(App[None]):
@@ -24,9 +25,10 @@ class Wearline(App[None]):
 
     CSS_PATH = "app.tcss"
     TITLE = "Wearline"
-    ENABLE_COMMAND_PALETTE = True
+    ENABLE_COMMAND_PALETTE = False
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("f1", "explain", "explain", priority=True),
+        Binding("f1", "explain", "explain", tooltip="explain this screen, its keys and its cautions", priority=True),
+        Binding("ctrl+p", "palette", "find", tooltip="find any place or action by its name", show=False, priority=True),
         Binding("ctrl+q", "quit", "quit", show=False, priority=True),
         Binding("ctrl+t", "other_theme", "paper or graphite", show=False),
     ]
@@ -152,20 +154,24 @@ class Wearline(App[None]):
         """Paper by day, graphite by night."""
         self.theme = "paper" if self.theme == "graphite" else "graphite"
 
-    def get_system_commands(self, screen: Screen[Any]) -> Iterable[SystemCommand]:
-        """Every place and every action of the screen, for the palette."""
-        for name, place in PLACES.items():
-            if not place.needs_more:
-                yield SystemCommand(place.title, place.says, lambda name=name: self.action_go(name))
-        for binding in screen.active_bindings.values():
-            if binding.binding.description and binding.enabled:
-                action = binding.binding.action
-                yield SystemCommand(
-                    binding.binding.description.capitalize(),
-                    f"key {binding.binding.key_display or binding.binding.key}",
-                    lambda action=action, node=binding.node: self.call_later(self.run_action, action, node),
-                )
-        yield SystemCommand("Paper or graphite", "the other theme", self.action_other_theme)
+    def action_palette(self) -> None:
+        """Every place and every action of the screen on top, by name."""
+        from tui.screens.palette import Choice, Palette
+        from tui.widgets.key_line import keys_of
+
+        if isinstance(self.screen, ModalScreen):
+            return
+        actions = [Choice(k.words, k.says, k.key, k.action, k.node) for k in keys_of(self.screen)]
+        places = [Choice(p.title, p.says, "", f"app.go('{n}')") for n, p in PLACES.items() if not p.needs_more]
+        general = [
+            Choice("paper or graphite", "the other theme", "^t", "app.other_theme"),
+            Choice("leave", "write what is queued, then leave", "^q", "app.quit"),
+        ]
+        self.push_screen(Palette([*actions, *places, *general]), self._chosen)
+
+    def _chosen(self, choice: Choice | None) -> None:
+        if choice is not None:
+            self.call_later(self.run_action, choice.action, choice.node)
 
     async def action_quit(self) -> None:
         """Write what is queued, then leave."""

@@ -49,6 +49,7 @@ class Release(Standing):
         )  # fmt: skip
         yield Static("", id="way", markup=False)
         yield Listing([Column("what", 20), Column("", 0)], empty="nothing stands in the way: F2 signs", id="obstacles")
+        yield Static("", id="whole", markup=False)
 
     def record_opened(self) -> None:
         """Read the jobs: those to inspect first, then those under way, then the newest that were released."""
@@ -112,7 +113,13 @@ class Release(Standing):
         self.query_one("#way", Static).update(said)
         listing = self.query_one("#obstacles", Listing)
         listing.empty = "" if line.ended else "nothing stands in the way: F2 signs"
+        self.query_one("#whole", Static).update("")
         listing.show([Item((o.kind, o.says), o, "loud" if o.kind == "out" else "doubt" if o.kind == "in doubt" else "") for o in found])
+
+    @on(Listing.Moved, "#obstacles")
+    def whole_line(self, message: Listing.Moved) -> None:
+        """The whole sentence of the line under the cursor, below the list."""
+        self.query_one("#whole", Static).update(message.item.value.says)
 
     @on(Listing.Chosen, "#jobs")
     def to_obstacles(self) -> None:

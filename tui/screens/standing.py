@@ -4,13 +4,15 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Callable
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, ClassVar
 
 from rich.text import Text
 from textual.app import ComposeResult
 from textual.message import Message
 from textual.screen import Screen
-from textual.widgets import Footer, Static
+from textual.widgets import Static
+
+from tui.widgets.key_line import KeyLine
 
 if TYPE_CHECKING:
     from store.records import Record
@@ -30,10 +32,16 @@ class TopLine(Static):
 
 
 class Standing(Screen[Any]):
-    """A full screen. Subclasses give `body` and, where they need the record at once, `record_opened`."""
+    """A full screen. Subclasses give `body` and, where they need the record at once, `record_opened`.
+
+    To add one: a file here with a class on this one, its .tcss beside it, and a line in `tui.screens.places`. TITLE_WORDS is
+    what the top line says (or `where`), EXPLAINS what F1 says in the trade's words, CAUTIONS what to beware of there, BINDINGS
+    the keys for the bottom line, each with a word or two and a longer tooltip. Whatever is read or changed goes through `ask`.
+    """
 
     TITLE_WORDS = ""
     EXPLAINS = ""
+    CAUTIONS: ClassVar[tuple[str, ...]] = ()
 
     class Answered(Message):
         """An answer from a thread; stale ones are dropped by their number."""
@@ -45,6 +53,7 @@ class Standing(Screen[Any]):
     def __init__(self) -> None:
         super().__init__()
         self.asked: Counter[str] = Counter()
+        self.key_names: dict[str, str] = {}
 
     @property
     def wearline(self) -> Wearline:
@@ -61,7 +70,7 @@ class Standing(Screen[Any]):
         """Top line, body, keys."""
         yield TopLine(id="top")
         yield from self.body()
-        yield Footer(compact=True, show_command_palette=False)
+        yield KeyLine()
 
     def body(self) -> ComposeResult:
         """What stands between the top line and the keys."""

@@ -18,12 +18,16 @@ from textual.strip import Strip
 
 @dataclass(frozen=True, slots=True)
 class Column:
-    """A column: its head, its width (0: what is left), and whether it stands to the right or is quiet."""
+    """A column: its head, its width (0: what is left), whether it stands to the right or is quiet.
+
+    `from_width`: shown only where the list is at least so wide.
+    """
 
     head: str
     width: int
     right: bool = False
     quiet: bool = False
+    from_width: int = 0
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,9 +69,13 @@ class Listing(ScrollView, can_focus=True):
             """The list that it came from."""
             return self.listing
 
-    def __init__(self, columns: Sequence[Column], *, empty: str = "", id: str | None = None) -> None:  # noqa: A002
+    def __init__(
+        self, columns: Sequence[Column], *, empty: str = "", id: str | None = None, led: bool = False  # noqa: A002
+    ) -> None:
+        """`led`: the keys stay with a line to type on, which passes moving keys here; the list takes no focus."""
         super().__init__(id=id)
-        self.columns, self.empty = tuple(columns), empty
+        self.columns, self.empty, self.is_led = tuple(columns), empty, led
+        self.can_focus = not led
         self.items: list[Item] = []
         self.at = 0
         self.waiting = False
@@ -163,11 +171,12 @@ class Listing(ScrollView, can_focus=True):
             self.scroll_to(y=self.at - room + 1, animate=False, immediate=True)
 
     def widths(self) -> list[int]:
-        """The columns' widths at this size; one of width 0 takes what is left."""
-        fixed = sum(c.width + 1 for c in self.columns if c.width)
-        flexible = [c for c in self.columns if not c.width]
-        left = max(4, (self.size.width - fixed) // max(1, len(flexible)) - 1)
-        return [c.width or left for c in self.columns]
+        """The columns' widths at this size: one of width 0 shares what is left, one that has no room yet has none."""
+        shown = [c for c in self.columns if self.size.width >= c.from_width]
+        fixed = sum(c.width + 1 for c in shown if c.width)
+        flexible = sum(not c.width for c in shown)
+        left = max(4, (self.size.width - fixed) // max(1, flexible) - 1)
+        return [(c.width or left) if c in shown else 0 for c in self.columns]
 
     def render_line(self, y: int) -> Strip:
         """The heads on the first line, then the lines from where the list is scrolled to."""
@@ -176,7 +185,7 @@ class Listing(ScrollView, can_focus=True):
         quiet = ground + Style(color=tones["quiet"])
         if y == 0:
             return self._line(
-                [c.head for c in self.columns], [quiet + Style(underline=False)] * len(self.columns), width, ground
+                [c.head for c in self.columns], [quiet] * len(self.columns), width, ground
             )
         line = y - 1 + self.scroll_offset.y
         if not self.items and y == 2 and not self.waiting:
@@ -190,7 +199,7 @@ class Listing(ScrollView, can_focus=True):
             return Strip([Segment(text, ground + Style(bold=True)), rest]).adjust_cell_length(width, ground)
         if line == self.at:
             here = Style(color=tones["brass-ink"], bgcolor=tones["brass"], bold=True)
-            if not self.has_focus and not getattr(self, "follows_input", False):
+            if not self.has_focus and not self.is_led:
                 here = ground + Style(color=tones["brass"], bold=True)
             return self._line(item.cells, [here] * len(self.columns), width, here)
         tone = ground + Style(color=tones[item.tone], bold=item.tone == "loud") if item.tone else ground
@@ -200,6 +209,8 @@ class Listing(ScrollView, can_focus=True):
     def _line(self, cells: Sequence[str], styles: Sequence[Style], width: int, ground: Style) -> Strip:
         segments = []
         for text, column, room, style in zip(cells, self.columns, self.widths(), styles, strict=False):
+            if not room:
+                continue
             segments.append(Segment(fitted(text, room, right=column.right) + " ", style))
         return Strip(segments).adjust_cell_length(width, ground)
 
