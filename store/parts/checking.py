@@ -146,7 +146,7 @@ class _Checking:
         reached = [answer.number for answer in walk.answers]
         clash = clashes.conflicts(walk.seen, {*starts, *reached})
         self.disputed = clashes.disputed(clash)
-        self._learn(walk.seen, starts)
+        self._learn(walk, clash, starts)
         came_of = evidence.of_numbers(self.conn, reached)
         on = self._on([*starts, *reached])
         led = self._models(followed, walk.answers)
@@ -165,8 +165,15 @@ class _Checking:
             walk.bounded,
         )  # fmt: skip
 
-    def _learn(self, seen: Sequence[Stated], starts: Sequence[int]) -> None:
-        ids = {one.of for one in seen} | {one.to for one in seen if one.to is not None} | set(starts)
+    def _learn(self, walk: interchange.Walk, clash: Sequence[Conflict], starts: Sequence[int]) -> None:
+        """Read every number that the answer names."""
+        ids = set(starts)
+        for path in [answer.path for answer in walk.answers] + [stop.path for stop in walk.stopped]:
+            ids.update(step.end for step in path)
+        stated = [one for conflict in clash for one in conflict.says] + [stop.says for stop in walk.stopped]
+        stated += [one for one in walk.seen if one.of in starts]
+        for one in stated:
+            ids.update((one.of, one.of if one.to is None else one.to))
         self.names.update((number.id, number) for number in numbers.by_ids(self.conn, list(ids)))
 
     def _on(self, ids: Sequence[int]) -> Mapping[int, OnModel]:

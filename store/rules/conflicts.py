@@ -128,7 +128,7 @@ def _forbidden(seen: Sequence[Stated], reached: frozenset[int]) -> Iterable[Conf
                 uses.setdefault(one.of, []).append(one)
     for bar in bars:
         number = bar.of if bar.to is None else bar.to
-        against = [one for one in uses.get(number, ()) if bar.to is None or bar.of in {one.of, one.to}]
+        against = [one for one in uses.get(number, ()) if bar.to is None or bar.of in (one.of, one.to)]
         if against or (bar.to in reached and bar.of in reached):
             yield _conflict(Clash.forbidden, (bar, *against), against)
 

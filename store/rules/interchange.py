@@ -18,7 +18,7 @@ from enum import StrEnum
 from typing import Protocol
 
 MOST_NUMBERS = 500
-ROOM = 8  # statements looked at on one level, for each number that may be walked: dense families hold many a pair
+ROOM = 40  # statements looked at on one level, for each number that may be walked: dense families hold many a pair
 
 
 class Relation(StrEnum):
@@ -102,8 +102,11 @@ class Walk:
 class Lists(Protocol):
     """Where statements are looked up, a whole level of numbers at once."""
 
-    def onward(self, numbers: Sequence[int], most: int) -> Sequence[Stated]:
-        """What is stated of these numbers, but do-not-use, and the two-way statements that name them; `most` at the most."""
+    def onward(self, numbers: Sequence[int], most: int, ends: int) -> tuple[Sequence[Stated], bool]:
+        """What is stated of these numbers, but do-not-use, and the two-way statements that name them.
+
+        At most about `most` statements and about `ends` different numbers in them; second: whether more were left.
+        """
 
     def barred(self, numbers: Sequence[int]) -> Sequence[Stated]:
         """The do-not-use statements of these numbers."""
@@ -128,6 +131,7 @@ def path_trust(path: Sequence[Step], disputed: Iterable[int] = ()) -> Trust:
 def walk(starts: Sequence[int], lists: Lists, most: int = MOST_NUMBERS) -> Walk:
     """Everything that `starts` lead to, breadth first, at most `most` numbers.
 
+    What goes beyond that is not walked, and the walk says that it was bounded.
     A one-way relation is walked one way only; a substitute or what a kit holds ends its path; a second caveat is never
     crossed; a do-not-use stops a path and is reported. Loops end, as no number is walked from twice in the same state.
     """
@@ -153,7 +157,7 @@ class _Walking:
     def run(self) -> Walk:
         frontier: list[_State] = list(self.came)
         self._learn_bars(self.starts)
-        while frontier:
+        while frontier and not self.bounded:
             frontier = self._level(frontier)
         found = [number for number in self.best if number not in self.starts]
         answers = [Answer(number, self._path((number, self.best[number]))) for number in found]
@@ -165,9 +169,8 @@ class _Walking:
         ways: dict[int, list[_State]] = {}
         for state in frontier:
             ways.setdefault(state[0], []).append(state)
-        room = ROOM * self.most
-        stated = self.lists.onward(list(ways), room)
-        self.bounded |= len(stated) >= room
+        stated, cut = self.lists.onward(list(ways), ROOM * self.most, len(ways) + self.most + 1)
+        self.bounded |= cut
         steps = [step for one in stated for step in _steps(one, ways)]
         self.seen.update((one.id, one) for one in stated)
         steps.sort(key=_preference)

@@ -21,13 +21,13 @@ class Given:
     def __init__(self, stated: Sequence[Stated]) -> None:
         self.stated = stated
 
-    def onward(self, numbers: Sequence[int], most: int) -> Sequence[Stated]:
+    def onward(self, numbers: Sequence[int], most: int, ends: int) -> tuple[Sequence[Stated], bool]:
         wanted = set(numbers)
         found = [
             one for one in self.stated
             if one.relation is not BARRED and (one.of in wanted or (one.relation in TWO_WAY and one.to in wanted))
         ]  # fmt: skip
-        return found[:most]
+        return found[:most], len(found) > most
 
     def barred(self, numbers: Sequence[int]) -> Sequence[Stated]:
         return [one for one in self.stated if one.relation is BARRED and one.of in set(numbers)]
