@@ -105,7 +105,7 @@ class Wearline(App[None]):
     def on_wearline_opened(self, message: Opened) -> None:
         """Start the writer and tell every screen."""
         self.record = message.record
-        self.writer = Writer(message.record, lambda answers: self._written(answers))
+        self.writer = Writer(message.record, self._written)
         self.tell_screens("record_opened")
 
     def on_wearline_unopened(self, message: Unopened) -> None:

@@ -5,7 +5,6 @@ from __future__ import annotations
 from datetime import UTC, datetime
 from typing import Any, ClassVar
 
-from rich.text import Text
 from textual import events, on
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
@@ -16,6 +15,7 @@ from tui.screens.standing import Standing
 from tui.widgets.listing import Column, Item, Listing
 
 LOOK_AGAIN_SECONDS = 0.5
+ORDER = ("taken in", "stripped", "on rework", "to inspect", "released", "scrapped", "returned")
 
 
 class Bench(Standing):
@@ -24,11 +24,16 @@ class Bench(Standing):
     CSS_PATH = "bench.tcss"
     TITLE_WORDS = "Bench"
     EXPLAINS = (
-        "Every open job, newest first, with where it stands and what is next. Type to search tag, serial, model or customer; "
-        "arrows move, Enter opens. F2 takes in a core: a unit that was released before becomes a comeback at once."
+        "Every open job under where it stands and what is next, the newest first: how many days it is here, how many sizes are "
+        "out, how many the gauge cannot tell (doubt). Type to search tag, serial, model or customer; arrows move, Enter opens. "
+        "F2 takes in a core: a unit that was released before becomes a comeback at once."
+    )
+    CAUTIONS = (
+        "Big frames and armatures are heavy: hoist them, and never lift an armature by its commutator.",
+        "Dust of old insulation may hold asbestos: do not dry-blow it; vacuum or wipe it wet.",
     )
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("f2", "take_in", "take in"),
+        Binding("f2", "take_in", "take in", tooltip="take in a core"),
         Binding("f3", "ended", "ended", tooltip="show jobs that have ended too, or only open ones"),
         Binding("f4", "who", "who", tooltip="say who works here now"),
         *(Binding(p.key, f"app.go('{name}')", p.title.lower(), show=False) for name, p in PLACES.items() if p.key),
@@ -45,18 +50,16 @@ class Bench(Standing):
         yield Static("opening the record ...", id="counts", markup=False)
         listing = Listing(
             [
-                Column("tag", 6), Column("model", 9), Column("serial", 9), Column("customer", 0), Column("stands", 10),
-                Column("days", 4, right=True), Column("out", 3, right=True), Column("?", 2, right=True),
-                Column("next", 17, quiet=True),
+                Column("tag", 7), Column("model", 10), Column("serial", 10), Column("", 8), Column("customer", 0),
+                Column("complaint", 0, quiet=True, from_width=100), Column("days", 4, right=True), Column("out", 3, right=True),
+                Column("doubt", 5, right=True),
             ],
             empty="no job here; F2 takes in a core",
             id="jobs",
+            led=True,
         )  # fmt: skip
-        listing.can_focus = False
-        listing.follows_input = True  # type: ignore[attr-defined]
         listing.waiting = True
         yield listing
-        yield Static("  ".join(f"{p.key.upper()} {p.title.lower()}" for p in PLACES.values() if p.key), id="places", markup=False)
 
     def on_mount(self) -> None:
         """Look for what others have written, twice a second."""
@@ -66,10 +69,7 @@ class Bench(Standing):
 
     def first_look(self, lines: Any) -> None:
         """The open jobs, while the rest of the record is still being opened."""
-        from store import job_lines
-
-        now = datetime.now(UTC).isoformat()
-        self._show((lines, job_lines.counts(lines), now))
+        self._show((lines, datetime.now(UTC).isoformat()))
 
     def record_opened(self) -> None:
         """Fill the list; ask who works here where people are entered and nobody is said."""
@@ -119,20 +119,22 @@ class Bench(Standing):
             from store import jobs
 
             assert self.record is not None
-            return (
-                jobs.listing(self.record, outcome=outcome, search=search),
-                jobs.counts(self.record),
-                self.record.now(),
-            )
+            return jobs.listing(self.record, outcome=outcome, search=search), self.record.now()
 
         self.ask("jobs", question, self._show)
 
     def _show(self, answer: Any) -> None:
-        lines, counts, now = answer
-        self.query_one("#counts", Static).update(
-            Text("  ".join(f"{count} {stands}" for stands, count in counts.items()), style="", no_wrap=True)
-        )
-        self.query_one("#jobs", Listing).show([_item(line, now) for line in lines])
+        lines, now = answer
+        what = "job" if self.with_ended else "open job"
+        found = "found" if self.query_one("#search", Input).value.strip() else "on the bench" if not self.with_ended else ""
+        self.query_one("#counts", Static).update(f"{len(lines)} {what}{'' if len(lines) == 1 else 's'} {found}")
+        items = []
+        for stands in ORDER:
+            here = [line for line in lines if line.stands == stands]
+            if here:
+                items.append(Item((f"{stands}  {len(here)}{'   ' + here[0].next if here[0].next else ''}",), heading=True))
+                items += [_item(line, now) for line in here]
+        self.query_one("#jobs", Listing).show(items)
 
     @on(Input.Changed, "#search")
     def search_changed(self) -> None:
@@ -184,8 +186,8 @@ def _item(line: Any, now: str) -> Item:
     days = max(0, int(times.days_between(line.taken_in, line.ended or now)))
     return Item(
         (
-            line.tag, line.model, line.serial, ("comeback  " if line.earlier else "") + line.customer, line.stands, str(days),
-            str(line.out or ""), str(line.in_doubt or ""), line.next,
+            line.tag, line.model, line.serial, "comeback" if line.earlier else "", line.customer, line.complaint, str(days),
+            str(line.out or ""), str(line.in_doubt or ""),
         ),
         line.tag,
         "quiet" if line.ended else "",

@@ -4,6 +4,9 @@ from __future__ import annotations
 
 from typing import Any, ClassVar
 
+from rich.console import Group
+from rich.style import Style
+from rich.table import Table
 from rich.text import Text
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
@@ -11,9 +14,14 @@ from textual.containers import VerticalScroll
 from textual.screen import ModalScreen, Screen
 from textual.widgets import Static
 
+from tui.widgets.key_line import keys_of
+
+EVERYWHERE = (
+    ("^p", "find any place or action by its name"),
+    ("^t", "paper or graphite"),
+    ("^q", "leave; what was accepted is on disk already"),
+)
 GENERAL = (
-    "Everywhere: ctrl+p finds every place and action by its name, ctrl+t changes between paper and graphite, ctrl+q leaves. "
-    "Nothing that was accepted is lost when you leave or the power goes.\n\n"
     "Follow the maker's manual and local rules; have electrical work done by those licensed for it. Wearline never says that "
     "a unit is electrically safe."
 )
@@ -28,20 +36,28 @@ class Explain(ModalScreen[None]):
     def __init__(self, screen: Screen[Any]) -> None:
         super().__init__()
         self.explained = screen
+        self.keys = list(keys_of(screen))
 
     def compose(self) -> ComposeResult:
-        """Purpose, keys, cautions."""
-        text = Text()
-        text.append(f"{getattr(self.explained, 'TITLE_WORDS', '') or 'Here'}\n\n", style="bold")
-        text.append(f"{getattr(self.explained, 'EXPLAINS', '')}\n\n")
-        for active in self.explained.active_bindings.values():
-            binding = active.binding
-            if binding.description and binding.show:
-                text.append(f"{self.app.get_key_display(binding):>10}  ", style="bold")
-                text.append(f"{binding.tooltip or binding.description}\n")
-        text.append(f"\n{GENERAL}")
+        """Purpose, keys, cautions, how to get back."""
+        tones = self.app.theme_variables
+        brass, quiet = Style(color=tones["brass"], bold=True), Style(color=tones["quiet"])
+        keys = Table.grid(padding=(0, 2))
+        keys.add_column(justify="right", style=brass, no_wrap=True)
+        keys.add_column()
+        for key, says in [*((k.key, k.says) for k in self.keys if k.action != "explain"), *EVERYWHERE]:
+            keys.add_row(Text(key), Text(says))
+        cautions = Text(style="bold")
+        for caution in getattr(self.explained, "CAUTIONS", ()):
+            cautions.append(f"CAUTION  {caution}\n")
         with VerticalScroll():
-            yield Static(text, markup=False)
+            yield Static(
+                Group(
+                    Text(getattr(self.explained, "TITLE_WORDS", "") or "Here", style="bold"), Text(),
+                    Text(getattr(self.explained, "EXPLAINS", "")), Text(), keys, Text(), cautions, Text(GENERAL, style=quiet),
+                )
+            )  # fmt: skip
+        yield Static("arrows scroll   Esc back", markup=False, classes="keys")
 
     def action_close(self) -> None:
         """Back to the screen."""

@@ -43,7 +43,14 @@ class Gauges(Standing):
             id="gauges",
         )  # fmt: skip
         yield Static("", id="touched-head", markup=False)
-        yield Listing([Column("tag", 10), Column("stands", 12), Column("readings", 8, right=True), Column("from", 17, quiet=True), Column("to", 0, quiet=True)], empty="no reading since its last good calibration", id="touched")  # fmt: skip
+        yield Listing(
+            [
+                Column("tag", 10), Column("stands", 12), Column("readings", 8, right=True), Column("from", 17, quiet=True),
+                Column("to", 0, quiet=True),
+            ],
+            empty="no reading since its last good calibration",
+            id="touched",
+        )  # fmt: skip
 
     def record_opened(self) -> None:
         """Read the gauges."""

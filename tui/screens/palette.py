@@ -44,7 +44,9 @@ class Palette(ModalScreen[Choice | None]):
         with Vertical():
             yield Input(placeholder="what do you want to do?")
             listing = Listing(
-                [Column("", 22), Column("", 0, quiet=True), Column("", 5, quiet=True)], empty="nothing of that name", led=True
+                [Column("", 22), Column("", 0, quiet=True), Column("", 5, quiet=True)],
+                empty="nothing of that name",
+                led=True,
             )
             yield listing
 
@@ -56,7 +58,9 @@ class Palette(ModalScreen[Choice | None]):
         """Those in which every word stands, names before explanations."""
         words = asked.casefold().split()
         in_name = [c for c in self.choices if all(w in c.name.casefold() for w in words)]
-        beside = [c for c in self.choices if c not in in_name and all(w in f"{c.name} {c.says}".casefold() for w in words)]
+        beside = [
+            c for c in self.choices if c not in in_name and all(w in f"{c.name} {c.says}".casefold() for w in words)
+        ]
         self.query_one(Listing).show([Item((c.name, c.says, c.key), c) for c in (*in_name, *beside)])
 
     @on(Input.Changed)

@@ -31,6 +31,7 @@ class PickGauge(ModalScreen[str | None]):
         with Vertical():
             yield Static(f"Gauge for: {self.kind or 'this reading'}", markup=False, classes="head")
             yield Listing([Column("gauge", 14), Column("kind", 0), Column("unit", 5), Column("due", 11)])
+            yield Static("Enter chooses   Esc no change", markup=False, classes="keys")
 
     def on_mount(self) -> None:
         """Those whose kind is named first on top; overdue ones say so."""

@@ -31,8 +31,11 @@ class TakeIn(Standing):
     TITLE_WORDS = "Bench > take in a core"
     EXPLAINS = (
         "Enter goes to the next line; ctrl+s takes the core in from anywhere. Model and serial are needed, all else can wait. "
-        "Any number that leads to a model will do. Earlier jobs of the same unit show below; a release makes this a comeback.\n\n"
-        "Disconnect and drain before stripping; treat unknown old insulation as suspect and do not dry-blow it."
+        "Any number that leads to a model will do. Earlier jobs of the same unit show below; a release makes this a comeback."
+    )
+    CAUTIONS = (
+        "Battery: disconnect the negative first, no sparks, goggles on, rings and watches off.",
+        "Treat unknown old insulation as suspect: do not dry-blow it.",
     )
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("ctrl+s", "take", "take in", priority=True),

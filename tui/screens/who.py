@@ -30,6 +30,7 @@ class Who(ModalScreen[str | None]):
                 [Column("", 8), Column("name", 0), Column("may", 20, quiet=True)],
                 empty="nobody is entered yet: wearline people add INITIALS NAME",
             )
+            yield Static("Enter chooses   a letter goes there   Esc back", markup=False, classes="keys")
 
     def on_mount(self) -> None:
         """Read the people; there are few."""

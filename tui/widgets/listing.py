@@ -70,7 +70,12 @@ class Listing(ScrollView, can_focus=True):
             return self.listing
 
     def __init__(
-        self, columns: Sequence[Column], *, empty: str = "", id: str | None = None, led: bool = False  # noqa: A002
+        self,
+        columns: Sequence[Column],
+        *,
+        empty: str = "",
+        id: str | None = None,
+        led: bool = False,  # noqa: A002
     ) -> None:
         """`led`: the keys stay with a line to type on, which passes moving keys here; the list takes no focus."""
         super().__init__(id=id)
@@ -184,9 +189,7 @@ class Listing(ScrollView, can_focus=True):
         ground = Style(color=tones["foreground"], bgcolor=tones["background"])
         quiet = ground + Style(color=tones["quiet"])
         if y == 0:
-            return self._line(
-                [c.head for c in self.columns], [quiet] * len(self.columns), width, ground
-            )
+            return self._line([c.head for c in self.columns], [quiet] * len(self.columns), width, ground)
         line = y - 1 + self.scroll_offset.y
         if not self.items and y == 2 and not self.waiting:
             return Strip([Segment(f" {self.empty}", quiet)]).adjust_cell_length(width, ground)
