@@ -45,9 +45,8 @@ def folder(record: Record) -> Path:
 
 def kept(record: Record) -> tuple[Backup, ...]:
     """The backups that were kept by themselves, newest first."""
-    found = []
-    for path in folder(record).glob("????-??-??.wearline"):
-        found.append(Backup(path, path.stem, path.stat().st_size))
+    paths = folder(record).glob("????-??-??.wearline")
+    found = [Backup(path, path.stem, path.stat().st_size) for path in paths]
     return tuple(sorted(found, key=lambda b: b.day, reverse=True))
 
 

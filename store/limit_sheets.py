@@ -130,11 +130,13 @@ def by_revision(record: Record, conn: Connection, revision_id: int) -> LimitShee
         raise NotFound("limit revision", str(revision_id))
     rev = Revision(row.id, row.model_id, row.number, Rule(row.decision), row.at, row.by, row.why)
     known = catalogue.catalogue(record, conn)
-    rows = conn.execute(select(LimitRow.__table__).where(LimitRow.revision_id == revision_id)).all()  # type: ignore[attr-defined]
+    rows = conn.execute(
+        select(LimitRow.__table__, LimitRow.count.label("expected")).where(LimitRow.revision_id == revision_id)
+    ).all()  # type: ignore[attr-defined]
     order = {c.id: n for n, c in enumerate(known.all)}
     limits = tuple(
         SheetLimit(
-            r.id, known.by_id[r.characteristic_id].name, r.stage, r.unit, r.new, r.low, r.high, r.at_limit, r._mapping["count"],
+            r.id, known.by_id[r.characteristic_id].name, r.stage, r.unit, r.new, r.low, r.high, r.at_limit, r.expected,
             r.source, r.note, _limit(r, known.by_id[r.characteristic_id], rev.decision),
         )
         for r in sorted(rows, key=lambda r: (order[r.characteristic_id], STAGES.index(r.stage)))
@@ -319,7 +321,7 @@ def _limit(r: Any, what: Characteristic, decision: Rule) -> Limit:
         low=size(r.low),
         high=size(r.high),
         equal_passes=r.at_limit == "pass",
-        expected=r._mapping["count"] or what.count or 1,
+        expected=r.expected or what.count or 1,
         rule=decision,
     )
 

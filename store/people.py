@@ -55,10 +55,11 @@ def acting(record: Record, by: str | None) -> str:
 def require_known(record: Record, conn: Connection | None = None) -> None:
     """Raises Refused when people are entered and nobody known acts: a change must say who made it."""
     if record.by != SHOP:
-        return None
+        return
     if conn is None:
         with record.read() as own:
-            return require_known(record, own)
+            require_known(record, own)
+        return
     if found := rows(conn, "SELECT initials FROM person WHERE active ORDER BY initials LIMIT 8"):
         raise Refused(f"say who acts: --as INITIALS, one of {', '.join(r[0] for r in found)}")
 

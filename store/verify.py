@@ -272,11 +272,17 @@ def _reports(raw: sqlite3.Connection, chain: _Chain, progress: Progress) -> int:
     A report that came in by a file carries the head of the record that issued it.
     """
     count = 0
-    for key, number, digest, report, head in raw.execute("SELECT id, number, digest, report, head FROM release ORDER BY id"):
+    for key, number, digest, report, head in raw.execute(
+        "SELECT id, number, digest, report, head FROM release ORDER BY id"
+    ):
         if hashlib.sha256(report.encode()).hexdigest() != digest:
             raise _Found(f"report {number}", "is not as it was issued")
         came_by_file = any(first <= key <= last for first, last, _, _ in chain.loads.get("release", ()))
-        if head != audit.GENESIS and not came_by_file and not raw.execute("SELECT 1 FROM audit WHERE hash = ?", (head,)).fetchone():
+        if (
+            head != audit.GENESIS
+            and not came_by_file
+            and not raw.execute("SELECT 1 FROM audit WHERE hash = ?", (head,)).fetchone()
+        ):
             raise _Found(f"report {number}", "was printed with a head that the chain never had")
         count += 1
         if count % 1000 == 0:
@@ -291,12 +297,11 @@ def _judgements(path: Path, raw: sqlite3.Connection, progress: Progress) -> int:
     if orphans:
         raise _Found(f"judgement of job {orphans[0]}", "belongs to no job")
     chunks = [ids[n : n + CHUNK] for n in range(0, len(ids), CHUNK)]
-    done = total = 0
-    for count, wrong in _each(path, chunks):
+    total = 0
+    for done, (count, wrong) in enumerate(_each(path, chunks), start=1):
         if wrong is not None:
             raise _Found(*wrong)
         total += count
-        done += 1
         progress("judgements, jobs", min(done * CHUNK, len(ids)))
     return total
 

@@ -19,17 +19,28 @@ def modules_after(code: str) -> set[str]:
     return set(done.stdout.split())
 
 
+ALL_RULES = (
+    "import pkgutil, importlib, store.rules\n"
+    "for m in pkgutil.walk_packages(store.rules.__path__, 'store.rules.'): importlib.import_module(m.name)"
+)
+STORE = "import store.records, store.jobs, store.readings, store.sheets, store.limit_sheets, store.gauges, store.files"
+HELP = "from tui.commands import cli\nimport click\nfrom click.testing import CliRunner\nCliRunner().invoke(cli, ['--help'])"
+DRAWING = {"textual", "rich", "click"}
+DATABASE = {"sqlalchemy", "sqlmodel", "alembic"}
+NUMBERS = {"scipy", "numpy"}
+
+
 @pytest.mark.parametrize(
     ("code", "absent"),
     [
-        ("import pkgutil, importlib, store.rules\nfor m in pkgutil.walk_packages(store.rules.__path__, 'store.rules.'): importlib.import_module(m.name)", {"sqlalchemy", "sqlmodel", "sqlite3", "textual", "rich", "click", "typst", "scipy"}),
-        ("import store.records, store.jobs, store.readings, store.sheets, store.limit_sheets, store.gauges, store.files", {"textual", "rich", "click", "typst", "scipy", "alembic", "numpy"}),
-        ("import store.reports.issue", {"textual", "rich", "click", "scipy", "alembic"}),
-        ("import tui.app, tui.screens.bench", {"sqlalchemy", "sqlmodel", "store.records", "typst", "scipy", "alembic", "rapidfuzz", "numpy"}),
-        ("from tui.commands import cli\nimport click\nfrom click.testing import CliRunner\nCliRunner().invoke(cli, ['--help'])", {"textual", "sqlmodel", "sqlalchemy", "scipy", "typst", "rich", "store.records", "numpy"}),
+        (ALL_RULES, {*DRAWING, *DATABASE, "sqlite3", "typst", "scipy"}),
+        (STORE, {*DRAWING, *NUMBERS, "typst", "alembic"}),
+        ("import store.reports.issue", {*DRAWING, "scipy", "alembic"}),
+        ("import tui.app, tui.screens.bench", {*DATABASE, *NUMBERS, "store.records", "typst", "rapidfuzz"}),
+        (HELP, {*DATABASE, *NUMBERS, "textual", "rich", "typst", "store.records"}),
     ],
     ids=["rules", "store", "reports", "screens", "help"],
-)  # fmt: skip
+)
 def test_what_does_not_come_along(code: str, absent: set[str]) -> None:
     """Each layer pulls in only what it needs."""
     assert modules_after(code) & absent == set()

@@ -89,12 +89,14 @@ def catalogue(record: Record, conn: Connection | None = None) -> Catalogue:
 
 
 def _read(conn: Connection) -> Catalogue:
-    rows = conn.execute(select(CharacteristicRow.__table__).order_by("place", "id")).all()  # type: ignore[attr-defined]
+    rows = conn.execute(
+        select(CharacteristicRow.__table__, CharacteristicRow.count.label("expected")).order_by("place", "id")
+    ).all()  # type: ignore[attr-defined]
     found = tuple(
         Characteristic(
             id=r.id, name=r.name, component=r.component, label=r.label, machines=_parts(r.machines),
             quantity=Quantity(r.quantity), unit=r.unit, statistic=Statistic(r.statistic), derive=r.derive,
-            positions=_parts(r.positions) or ("1",), noun=r.noun, count=r._mapping["count"], direction=r.direction,
+            positions=_parts(r.positions) or ("1",), noun=r.noun, count=r.expected, direction=r.direction,
             stages=_parts(r.stages), gauge=r.gauge, datum=r.datum, caution=r.caution, shipped=bool(r.shipped),
         )
         for r in rows

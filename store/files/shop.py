@@ -36,8 +36,7 @@ def _take_shop(loading: Loading, lines: Iterator[Numbered]) -> int:
 
 
 def _give_shop(record: Record, conn: Connection) -> Iterator[Sequence[str]]:
-    for name, value in conn.exec_driver_sql("SELECT name, value FROM setting ORDER BY name"):
-        yield name, value
+    yield from map(tuple, conn.exec_driver_sql("SELECT name, value FROM setting ORDER BY name"))
 
 
 def _take_people(loading: Loading, lines: Iterator[Numbered]) -> int:

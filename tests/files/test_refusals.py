@@ -129,7 +129,7 @@ def test_wrong_encoding_and_endless_lines(record: Record, tmp_path: Path) -> Non
     with pytest.raises(FileRefused, match=r"limits.csv:2: not UTF-8 after"):
         files.load(record, [path])
     path.write_bytes((LIMITS + "x\n").encode("utf-16"))
-    with pytest.raises(FileRefused, match="not UTF-8|NUL"):
+    with pytest.raises(FileRefused, match=r"not UTF-8|NUL"):
         files.load(record, [path])
     path.write_bytes(LIMITS.encode() + b"KS-100,brush-length,mm,9,," + b"x" * 100_000_000)
     with pytest.raises(FileRefused, match="longer than 1,000,000 bytes"):

@@ -7,7 +7,7 @@ from pathlib import Path
 
 import pytest
 
-from store import judgements, jobs, limit_sheets, people, readings, sheets
+from store import jobs, judgements, limit_sheets, people, readings, sheets
 from store.errors import NotFound, ReadingRefused, Refused
 from store.readings import Accepted, Entry
 from store.records import Record

@@ -55,7 +55,6 @@ def full(tmp_path_factory: pytest.TempPathFactory) -> Path:
     readings.add(bench, tag, "as-left", "end-play", "0.5", why="again", position="1")
     releases.concede(record.acting("MW"), tag, "end-play", "accepted")
     releases.release(record.acting("MW"), tag)
-    jobs.link(bench, "901", tag) if False else None
     record.close()
     assert verify.verify_file(path).wrong is None
     return path
@@ -111,15 +110,10 @@ def test_every_column_of_every_table(full: Path, tmp_path: Path) -> None:
         for column in columns:
 
             def alter(raw: sqlite3.Connection, name: str = name, column: str = column) -> None:
-                row = (
-                    'rowid = (SELECT min(rowid) FROM "{0}")'.format(name)
-                    if name != "judgement"
-                    else "rowid"
-                    if False
-                    else None
-                )
-                where = row or f"job_id = (SELECT min(job_id) FROM judgement) AND verdict IS NOT NULL"
-                value = raw.execute(f'SELECT "{column}" FROM "{name}" WHERE {where} LIMIT 1').fetchone()[0]
+                listed = [r[1] for r in raw.execute(f'PRAGMA table_info("{name}")')]
+                keys = [r[1] for r in raw.execute(f'PRAGMA table_info("{name}")') if r[5]] or listed
+                row = raw.execute(f'SELECT * FROM "{name}" LIMIT 1').fetchone()
+                value = row[listed.index(column)]
                 new = (
                     987_654
                     if value is None or isinstance(value, int)
@@ -127,16 +121,11 @@ def test_every_column_of_every_table(full: Path, tmp_path: Path) -> None:
                     if isinstance(value, float)
                     else f"{value}x"
                 )
-                if name == "judgement":
-                    key = raw.execute(
-                        f"SELECT job_id, stage, characteristic_id FROM judgement WHERE {where} LIMIT 1"
-                    ).fetchone()
-                    raw.execute(
-                        f'UPDATE judgement SET "{column}" = ? WHERE job_id = ? AND stage = ? AND characteristic_id = ?',
-                        (new, *key),
-                    )
-                else:
-                    raw.execute(f'UPDATE "{name}" SET "{column}" = ? WHERE {where}', (new,))
+                where = " AND ".join(f'"{key}" IS ?' for key in keys)
+                raw.execute(
+                    f'UPDATE "{name}" SET "{column}" = ? WHERE {where}',
+                    (new, *(row[listed.index(key)] for key in keys)),
+                )
 
             tried += 1
             if tampered(full, tmp_path, alter) is None:

@@ -10,6 +10,8 @@ from tui.commands.acting import as_json, on_record
 from tui.commands.output import write_json
 
 if TYPE_CHECKING:
+    from store.judgements import Judged
+    from store.readings import Accepted
     from store.records import Record
 
 
@@ -44,15 +46,28 @@ def read(
     answers = readings.add_all(record, tag, entries)
     last = answers[-1]
     if as_json:
-        write_json(
-            {
-                "tag": tag, "added": [{"characteristic": a.reading.characteristic, "position": a.reading.position, "value": a.reading.typed.text, "unit": a.reading.typed.unit} for a in answers],
-                "verdicts": [{"characteristic": j.characteristic.name, "verdict": j.judgement.verdict.value, "because": j.because} for j in last.judged],
-            }
-        )  # fmt: skip
+        write_json({"tag": tag, "added": [_added(a) for a in answers], "verdicts": [_verdict(j) for j in last.judged]})
     else:
         for j in last.judged:
             click.echo(f"{j.characteristic.label}: {j.judgement.verdict.value}; {j.because}")
     for answer in answers:
         for question in slips.questions(record, tag, answer.reading):
             click.echo(f"look again: {question}", err=True)
+
+
+def _added(answer: Accepted) -> dict[str, str]:
+    reading = answer.reading
+    return {
+        "characteristic": reading.characteristic,
+        "position": reading.position,
+        "value": reading.typed.text,
+        "unit": reading.typed.unit,
+    }
+
+
+def _verdict(judged: Judged) -> dict[str, str]:
+    return {
+        "characteristic": judged.characteristic.name,
+        "verdict": judged.judgement.verdict.value,
+        "because": judged.because,
+    }

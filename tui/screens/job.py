@@ -160,7 +160,7 @@ class JobScreen(Standing):
             gauge = self.gauges.get(row.characteristic.gauge)
             entry = Entry(
                 row.characteristic.name, given.text, self.stage, cell.position,
-                gauge=gauge if not row.characteristic.statistic.value == "attribute" else None, why=given.why,
+                gauge=gauge if row.characteristic.statistic.value != "attribute" else None, why=given.why,
             )  # fmt: skip
             self.waiting += 1
             writer.put(Order(self.tag, entry, (self, given.row, given.column)))

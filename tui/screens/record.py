@@ -74,7 +74,9 @@ class RecordPlace(Standing):
         self.query_one("#facts", Static).update(text)
 
     def _tell(self, what: str, done: int) -> None:
-        self.app.call_from_thread(self.query_one("#going-on", Static).update, f"{what}: {done:,}" if done else f"{what} ...")
+        self.app.call_from_thread(
+            self.query_one("#going-on", Static).update, f"{what}: {done:,}" if done else f"{what} ..."
+        )
 
     def action_verify(self) -> None:
         """Verify the record in a thread, telling how far it is."""
@@ -104,7 +106,9 @@ class RecordPlace(Standing):
             assert self.record is not None
             return backups.backup(self.record, Path(values["file"].strip()).expanduser())
 
-        form = Form("Backup", [Line("file", "to a new file", "", str(suggested))], keep, "Others may go on writing meanwhile.")
+        form = Form(
+            "Backup", [Line("file", "to a new file", "", str(suggested))], keep, "Others may go on writing meanwhile."
+        )
         self.app.push_screen(form, lambda path: self._said(f"backup: {path}" if path else ""))
 
     def action_restore(self) -> None:
@@ -115,7 +119,10 @@ class RecordPlace(Standing):
 
             return backups.restore(Path(values["source"].strip()).expanduser(), Path(values["to"].strip()).expanduser())
 
-        lines = [Line("source", "backup", "its file"), Line("to", "to a new file", "open it with: wearline --record FILE")]
+        lines = [
+            Line("source", "backup", "its file"),
+            Line("to", "to a new file", "open it with: wearline --record FILE"),
+        ]
         form = Form("Restore", lines, keep, "The copy is verified before it is named; nothing is overwritten.")
         self.app.push_screen(form, lambda path: self._said(f"restored and verified: {path}" if path else ""))
 
@@ -128,7 +135,8 @@ class RecordPlace(Standing):
             assert self.record is not None
             return exports.export(self.record, Path(values["folder"].strip()).expanduser())
 
-        form = Form("Export everything", [Line("folder", "into a folder", "", str(Path.home() / "wearline-export"))], keep, "A CSV file a kind, and the whole as JSON.")
+        line = Line("folder", "into a folder", "", str(Path.home() / "wearline-export"))
+        form = Form("Export everything", [line], keep, "A CSV file a kind, and the whole as JSON.")
         self.app.push_screen(form, lambda written: self._said(f"written: {', '.join(written)}" if written else ""))
 
     def _said(self, text: str) -> None:

@@ -75,7 +75,16 @@ class Release(Standing):
         def item(line: Any, tone: str) -> Item:
             issued = numbers.get(line.tag)
             number = issued.number if issued else "history" if line.ended else ""
-            cells = (line.tag, line.model, line.serial, line.customer, line.stands, str(line.out or ""), str(line.in_doubt or ""), number)
+            cells = (
+                line.tag,
+                line.model,
+                line.serial,
+                line.customer,
+                line.stands,
+                str(line.out or ""),
+                str(line.in_doubt or ""),
+                number,
+            )
             return Item(cells, line, tone)
 
         items = [item(line, "" if line.stands == "to inspect" else "quiet") for line in waiting]
@@ -108,13 +117,21 @@ class Release(Standing):
         said = f"{line.tag}: {len(found)} in the way" if found else f"{line.tag}: nothing stands in the way"
         if line.ended:
             said = f"{line.tag} {line.stands} {line.ended[:10]}"
-            said += "".join(f"   {i.number} {times.local(i.at)} {i.by}{' in the place of ' + i.amends if i.amends else ''}" for i in issued)
+            said += "".join(
+                f"   {i.number} {times.local(i.at)} {i.by}{' in the place of ' + i.amends if i.amends else ''}"
+                for i in issued
+            )
             said += "" if issued else "   entered from history, no report was issued here"
         self.query_one("#way", Static).update(said)
         listing = self.query_one("#obstacles", Listing)
         listing.empty = "" if line.ended else "nothing stands in the way: F2 signs"
         self.query_one("#whole", Static).update("")
-        listing.show([Item((o.kind, o.says), o, "loud" if o.kind == "out" else "doubt" if o.kind == "in doubt" else "") for o in found])
+        listing.show(
+            [
+                Item((o.kind, o.says), o, "loud" if o.kind == "out" else "doubt" if o.kind == "in doubt" else "")
+                for o in found
+            ]
+        )
 
     @on(Listing.Moved, "#obstacles")
     def whole_line(self, message: Listing.Moved) -> None:
@@ -151,7 +168,13 @@ class Release(Standing):
 
     def action_sign(self) -> None:
         """Release the job under the cursor: a word and the PIN, then it is frozen."""
-        self._end("Release", "a word beside the signature", self._release, "note", "The report is frozen and numbered; it prints the same for ever.")
+        self._end(
+            "Release",
+            "a word beside the signature",
+            self._release,
+            "note",
+            "The report is frozen and numbered; it prints the same for ever.",
+        )
 
     def _release(self, tag: str, text: str, pin: str | None) -> Any:
         from store import releases
@@ -218,7 +241,12 @@ class Release(Standing):
             releases.concede(self.record, line.tag, obstacle.characteristic, values["because"])
             return True
 
-        form = Form(f"Concession on {line.tag}", [Line("because", "because", "the reason stands in the report")], keep, obstacle.says)
+        form = Form(
+            f"Concession on {line.tag}",
+            [Line("because", "because", "the reason stands in the report")],
+            keep,
+            obstacle.says,
+        )
         self.app.push_screen(form, lambda done: self.record_opened() if done else None)
 
     def action_amend(self) -> None:
@@ -242,7 +270,9 @@ class Release(Standing):
             changed = {name: value for name, value in values.items() if value != getattr(job, name)}
             return releases.amend(self.record, line.tag, why, fields=changed)
 
-        form = Form(f"Amend the report of {line.tag}", lines, keep, "A new report names the old one; both print for ever.")
+        form = Form(
+            f"Amend the report of {line.tag}", lines, keep, "A new report names the old one; both print for ever."
+        )
         self.app.push_screen(form, lambda done: self.record_opened() if done else None)
 
     def action_report(self) -> None:
@@ -262,7 +292,13 @@ class Release(Standing):
             today = releases.on_day(self.record, self.record.now()[:10])
             return [issue.print_out(self.record, issued.tag) for issued in today]
 
-        self.ask("print", question, lambda said: self.notify(f"{len(said)} reports handed to the printer" if said else "no report was issued today"))
+        self.ask(
+            "print",
+            question,
+            lambda said: self.notify(
+                f"{len(said)} reports handed to the printer" if said else "no report was issued today"
+            ),
+        )
 
     def action_back(self) -> None:
         """From the lines to the jobs, then back."""

@@ -74,8 +74,8 @@ class Listing(ScrollView, can_focus=True):
         columns: Sequence[Column],
         *,
         empty: str = "",
-        id: str | None = None,
-        led: bool = False,  # noqa: A002
+        id: str | None = None,  # noqa: A002
+        led: bool = False,
     ) -> None:
         """`led`: the keys stay with a line to type on, which passes moving keys here; the list takes no focus."""
         super().__init__(id=id)

@@ -148,7 +148,8 @@ TABLES = (
     from_history BOOLEAN NOT NULL,
     PRIMARY KEY (id),
     CONSTRAINT outcome_is_known CHECK (outcome IN ('open','released','scrapped','returned')),
-    CONSTRAINT comeback_outcome_is_known CHECK (comeback_outcome IN ('','workmanship','part','wear','system','installation','wrong-part','no-fault','not-ours')),
+    CONSTRAINT comeback_outcome_is_known CHECK (comeback_outcome IN (
+        '','workmanship','part','wear','system','installation','wrong-part','no-fault','not-ours')),
     UNIQUE (tag),
     FOREIGN KEY(unit_id) REFERENCES unit (id),
     FOREIGN KEY(revision_id) REFERENCES revision (id),
