@@ -28,6 +28,7 @@ PLACES = {
     "limits": Place("tui.screens.limits", "Limits", "Limits", "wear limits of a model, with their sources", "f5"),
     "report": Place("tui.screens.report", "ReportPreview", "Report", "a report as it will print", needs_more=True),
     "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall", "f9"),
+    "notes": Place("tui.screens.notes", "Notes", "Notes", "find any note again, slips and all", "f7"),
     "release": Place("tui.screens.release", "Release", "Release", "what stands in the way, and the signature", "f10"),
     "record": Place("tui.screens.record", "RecordPlace", "Record", "the file: verify, backup, restore, export", "f12"),
 }
