@@ -6,6 +6,7 @@ import random
 from dataclasses import dataclass, field
 from datetime import UTC, datetime, timedelta
 
+from tests.demo_shop import parts
 from tests.demo_shop.sheets import DERIVED, MODELS, TESTS, Line, Model, sheet
 
 START, END = datetime(2024, 12, 2, 7, 30, tzinfo=UTC), datetime(2026, 11, 27, 15, 0, tzinfo=UTC)
@@ -210,15 +211,15 @@ class Shop:
     def _parts(self, visit: Visit) -> None:
         draw, m = self.draw, visit.model
         at = _time((visit.ended or END) - timedelta(hours=7))
-        suffix = m.number.partition("-")[2]
+        suffix = parts.suffix(m)
         if visit.lot:
             self.books.fitted.append(
-                (visit.tag, f"CT-{suffix}", "Wearwell", visit.lot, visit.supplier, "solenoid", "1", visit.bench, at)
+                (visit.tag, f"CT-{suffix}", "Lorne & Hobb", visit.lot, visit.supplier, "solenoid", "1", visit.bench, at)
             )
         if draw.random() < 0.7:
             lot = f"BR-{draw.randint(21, 26)}{draw.randint(0, 9)}"
             supplier = draw.choices(("Wray Electrical", "Penhallow Spares"), (60, 40))[0]
-            self.books.fitted.append((visit.tag, f"BS-{suffix}", "Wearwell", lot, supplier, "", "1", visit.bench, at))
+            self.books.fitted.append((visit.tag, f"BS-{suffix}", "Lorne & Hobb", lot, supplier, "", "1", visit.bench, at))
 
     def _stage(self, visit: Visit, stage: str, moment: datetime, *, partial: bool = False) -> None:
         worn = self.draw.betavariate(3, 2.4)

@@ -6,6 +6,7 @@ import csv
 import io
 from collections.abc import Iterable, Sequence
 
+from tests.demo_shop import parts
 from tests.demo_shop.life import Shop
 from tests.demo_shop.sheets import GAUGES, MODELS, TESTS, Line, sheet
 
@@ -44,6 +45,14 @@ def files() -> dict[str, str]:
         "readings.csv": _csv(("tag", "stage", "characteristic", "value", "position", "unit", "gauge", "by", "at"), books.readings),
         "notes.csv": _csv(("tag", "text", "at", "by"), books.notes),
         "findings.csv": _csv(("tag", "component", "mode", "mechanism", "cause", "note"), books.findings),
+        "numbers.csv": _csv(("number", "kind", "maker", "description", "status"), parts.numbers()),
+        "relations.csv": _csv(
+            ("from_number", "relation", "from_maker", "to_number", "to_maker", "caveat", "source", "dated"), parts.relations()
+        ),
+        "fits.csv": _csv(("number", "model", "maker", "position", "quantity", "source"), parts.fits()),
+        "sizes.csv": _csv(("number", "name", "value", "unit", "maker"), parts.sizes()),
+        "attributes.csv": _csv(("name", "value", "number", "maker", "model"), parts.attributes()),
+        "fitted.csv": _csv(("tag", "number", "maker", "lot", "supplier", "position", "quantity", "by", "at"), books.fitted),
     }  # fmt: skip
 
 
