@@ -132,7 +132,7 @@ def _add(record: Record, tag: str, entries: Sequence[Entry], *, whole: bool) -> 
     moved: dict[tuple[str, str], list[Judged]] = {}
     with record.change(_action(entries), tag) as change:
         people.require_known(record, change.conn)
-        job = _job(change.conn, tag)
+        job = job_at_hand(change.conn, tag)
         change.subject = job.tag
         for entry in entries:
             try:
@@ -159,7 +159,7 @@ def _action(entries: Sequence[Entry]) -> str:
 
 def correct_in(record: Record, change: Change, tag: str, entries: Sequence[Entry]) -> None:
     """Correct readings of a job that has ended, inside the change that amends its report. Raises like `add`."""
-    job = replace(_job(change.conn, tag), outcome="open")
+    job = replace(job_at_hand(change.conn, tag), outcome="open")
     for entry in entries:
         if not entry.why:
             raise Refused("a correction has a reason")
@@ -173,7 +173,7 @@ def of_job(record: Record, tag: str, stage: str | None = None, *, corrected: boo
     Raises NotFound.
     """
     with record.read() as conn:
-        return of_job_in(record, conn, _job(conn, tag).id, stage, corrected=corrected)
+        return of_job_in(record, conn, job_at_hand(conn, tag).id, stage, corrected=corrected)
 
 
 def of_job_in(
@@ -306,7 +306,8 @@ def limit_of(record: Record, conn: Connection, job: JobAtHand, one: Characterist
     return limit_sheets.by_revision(record, conn, job.revision_id).at(one.name, stage)
 
 
-def _job(conn: Connection, tag: str) -> JobAtHand:
+def job_at_hand(conn: Connection, tag: str) -> JobAtHand:
+    """A job by its tag. Raises NotFound."""
     found = rows(conn, _FIND + "j.tag = ?", (tag,))
     if not found and (key := comparing_key(tag)):
         found = rows(conn, _FIND + "j.key = ? LIMIT 2", (key,))
