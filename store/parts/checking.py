@@ -3,14 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from json import dumps
 
 from sqlalchemy import Connection
 
 from store import models
 from store.parts import candidates, evidence, numbers, on_model
+from store.parts.answers import Barred, Check, Contradiction, GoesOn, LedTo, Way, name, statement
 from store.parts.candidates import Candidate
-from store.parts.evidence import Evidence
 from store.parts.lists import RecordLists
 from store.parts.numbers import Number
 from store.parts.on_model import OnModel
@@ -19,82 +19,11 @@ from store.rules import attributes, interchange
 from store.rules import conflicts as clashes
 from store.rules import numbers as rule
 from store.rules.conflicts import Conflict
-from store.rules.interchange import Relation, Stated, Step, Trust
+from store.rules.interchange import Relation, Stated, Step
 from store.rules.numbers import How
+from store.sqlite.engine import rows
 
-
-@dataclass(frozen=True, slots=True)
-class Way:
-    """One step as it is walked, by names."""
-
-    start: Number
-    relation: Relation
-    end: Number
-    source: str
-    caveat: str
-    dated: str
-    trust: Trust
-
-    @property
-    def says(self) -> str:
-        """The step in one line: `A superseded by B (List 3, 2024-05-01)`."""
-        return statement(self.relation, name(self.start), name(self.end), self.source, self.caveat, self.dated)
-
-
-@dataclass(frozen=True, slots=True)
-class LedTo:
-    """A number that is led to, on whose word, and what came of it on the bench; `on` where a model was asked about."""
-
-    number: Number
-    path: tuple[Way, ...]
-    trust: Trust
-    evidence: Evidence
-    on: OnModel | None
-
-
-@dataclass(frozen=True, slots=True)
-class Barred:
-    """A number that may not be used though a path leads to it, and who says so."""
-
-    number: Number
-    path: tuple[Way, ...]
-    says: str
-
-
-@dataclass(frozen=True, slots=True)
-class Contradiction:
-    """What is wrong between lists, and each side's statement with its source."""
-
-    what: str
-    says: tuple[str, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class GoesOn:
-    """A part that a list says goes on a model that was asked or led to."""
-
-    model: str
-    number: Number
-    position: str
-    quantity: int | None
-    source: str
-
-
-@dataclass(frozen=True, slots=True)
-class Check:
-    """The whole answer. `followed` are the candidates that the paths start from: none while several may be meant."""
-
-    asked: str
-    candidates: tuple[Candidate, ...]
-    followed: tuple[Candidate, ...]
-    warnings: tuple[str, ...]
-    leads_to: tuple[LedTo, ...]
-    stopped: tuple[Barred, ...]
-    conflicts: tuple[Contradiction, ...]
-    models: tuple[str, ...]
-    parts: tuple[GoesOn, ...]
-    on: OnModel | None
-    bounded: bool
+MOST_MODELS = 10  # whose parts are listed in one answer
 
 
 def check(record: Record, number: str, *, on: str | None = None, most: int = interchange.MOST_NUMBERS) -> Check:
@@ -147,7 +76,7 @@ class _Checking:
         clash = clashes.conflicts(walk.seen, {*starts, *reached})
         self.disputed = clashes.disputed(clash)
         self._learn(walk, clash, starts)
-        came_of = evidence.of_numbers(self.conn, reached)
+        came_of = evidence.of_numbers(self.conn, [*starts, *reached])
         on = self._on([*starts, *reached])
         led = self._models(followed, walk.answers)
         return Check(
@@ -162,6 +91,7 @@ class _Checking:
             tuple(one.number for one in led),
             self._parts(led),
             on[starts[0]] if on and starts else self._unknown(),
+            {start: came_of.get(start, evidence.NONE) for start in starts},
             walk.bounded,
         )  # fmt: skip
 
@@ -215,10 +145,33 @@ class _Checking:
         return _led_to_models(self.record, self.conn, followed, [(self.names[a.number], a.path) for a in answers])
 
     def _parts(self, led: Sequence[candidates.ModelNumber]) -> tuple[GoesOn, ...]:
-        listed = [(model.number, part) for model in led for part in on_model.listed_parts(self.conn, model.id)]
-        unknown = [part.number for _, part in listed if part.number not in self.names]
-        self.names.update((number.id, number) for number in numbers.by_ids(self.conn, unknown))
-        return tuple(GoesOn(m, self.names[p.number], p.position, p.quantity, p.source) for m, p in listed)
+        found: list[GoesOn] = []
+        for model in led[:MOST_MODELS]:
+            listed = on_model.listed_parts(self.conn, model.id)
+            named = {one.id: one for one in numbers.by_ids(self.conn, [part.number for part in listed])}
+            on = on_model.answers(self.conn, list(named.values()), models.by_id(self.conn, model.id))
+            came_of = evidence.of_numbers(self.conn, list(named))
+            newer = _newer(self.conn, list(named))
+            found += [
+                GoesOn(
+                    model.number, named[part.number], part.position, part.quantity, part.source, on[part.number],
+                    came_of.get(part.number, evidence.NONE), newer.get(part.number, ()),
+                )
+                for part in listed
+            ]  # fmt: skip
+        return tuple(found)
+
+
+def _newer(conn: Connection, parts: Sequence[int]) -> dict[int, tuple[str, ...]]:
+    """What supersedes each of these parts, one step on."""
+    sql = (
+        "SELECT r.from_id, n.number FROM json_each(?) k CROSS JOIN relation r ON r.from_id = k.value "
+        "AND r.relation = 'superseded-by' JOIN part_number n ON n.id = r.to_id ORDER BY r.id"
+    )
+    found: dict[int, tuple[str, ...]] = {}
+    for which, number in rows(conn, sql, (dumps(list(parts)),)):
+        found[which] = (*found.get(which, ()), number)
+    return found
 
 
 def _led_to_models(
@@ -247,18 +200,3 @@ def models_for(record: Record, number: str) -> tuple[str, ...]:
     slip away is not taken for meant. Raises Refused where too little of it can be read.
     """
     return check(record, number).models
-
-
-def statement(relation: Relation, of: str, to: str, source: str, caveat: str, dated: str) -> str:
-    """A statement in one line, on whose word: `A superseded by B (List 3, 2024-05-01); new connector`."""
-    if relation is Relation.do_not_use:
-        said = f"do not use {to} for {of}" if to else f"do not use {of}"
-    else:
-        said = f"{of} {relation.replace('-', ' ')} {to}"
-    word = f"{source}, {dated or 'undated'}" if source else "no source"
-    return f"{said} ({word})" + (f"; {caveat}" if caveat else "")
-
-
-def name(number: Number) -> str:
-    """A number with its maker: `KS-100 of Alder`."""
-    return f"{number.number} of {number.maker}" if number.maker else number.number

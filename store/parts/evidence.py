@@ -24,6 +24,14 @@ class Evidence:
         """The share that comes back, least and most; (0, 1) where none was fitted."""
         return wilson(self.came_back, self.fitted)
 
+    @property
+    def says(self) -> str:
+        """In words: `fitted on 12, 1 came back (1% to 35%)`."""
+        if not self.fitted:
+            return "not fitted here yet"
+        low, high = self.interval
+        return f"fitted on {self.fitted}, {self.came_back} came back ({low:.0%} to {high:.0%})"
+
 
 NONE = Evidence(0, 0)
 

@@ -2,7 +2,8 @@
 
     WEARLINE_FULL=1 pytest -s tests/benchmarks/test_parts.py     10,000, 100,000 and 1,000,000 numbers, figures held
 
-Without it the small lists only, and what must hold there: costs that do not grow with the list.
+Without it the small lists only, and what must hold there: costs that do not grow with the list. Bounds are held in time of
+the processor, which a busy machine does not stretch; the wall clock stands beside it in the table.
 """
 
 from __future__ import annotations
@@ -57,8 +58,8 @@ def loaded(tmp_path_factory: pytest.TempPathFactory) -> Loaded:
     return found
 
 
-def bare(source: Path, target: Path) -> float:
-    """Seconds of one executemany a table, of the very rows, into the same indexes, in one transaction."""
+def bare(source: Path, target: Path) -> tuple[float, float]:
+    """Seconds, and seconds of the processor, of one executemany a table, of the very rows, into the same indexes, in one transaction."""
     target.unlink(missing_ok=True)
     given = sqlite3.connect(source)
     made = given.execute(
@@ -72,14 +73,14 @@ def bare(source: Path, target: Path) -> float:
         raw.execute(f"PRAGMA {pragma}")
     for (sql,) in made:
         raw.execute(sql)
-    begun = time.perf_counter()
+    begun, worked = time.perf_counter(), time.process_time()
     raw.execute("BEGIN IMMEDIATE")
     for name, rows in tables.items():
         raw.executemany(f"INSERT INTO {name} VALUES({','.join('?' * len(rows[0]))})", rows)
     raw.execute("COMMIT")
-    seconds = time.perf_counter() - begun
+    seconds, cpu = time.perf_counter() - begun, time.process_time() - worked
     raw.close()
-    return seconds
+    return seconds, cpu
 
 
 def test_loading_costs_little_more_than_bare_inserts(loaded: Loaded, tmp_path: Path) -> None:
@@ -89,16 +90,11 @@ def test_loading_costs_little_more_than_bare_inserts(loaded: Loaded, tmp_path: P
     """
     for count in COUNTS:
         cost = loaded.cost[count]
-        theirs = bare(loaded.paths[count], tmp_path / "bare.db")
-        ratio = cost["seconds"] / theirs
-        note(
-            f"load {count:,} numbers, {count * 3 // 2:,} relations ({cost['memory']:.0f} MiB)",
-            cost["seconds"],
-            "bare executemany",
-            theirs,
-            ratio,
-            "2.5 at 1,000,000",
-        )
+        theirs, worked = bare(loaded.paths[count], tmp_path / "bare.db")
+        ratio = cost["cpu"] / worked
+        what = f"load {count:,} numbers, {count * 3 // 2:,} relations ({cost['memory']:.0f} MiB)"
+        note(f"{what}, wall", cost["seconds"], "bare executemany", theirs, cost["seconds"] / theirs, "")
+        note(f"{what}, processor", cost["cpu"], "bare executemany", worked, ratio, "2.5 at 1,000,000")
         assert cost["memory"] < 1024
         assert cost["told"] >= 2 + count // 8192
         assert ratio <= (2.5 if count == 1_000_000 else 8)
@@ -116,16 +112,18 @@ def shelf(loaded: Loaded) -> Iterator[dict[int, Record]]:
         record.close()
 
 
-def percentiles(question: Question, typed: Sequence[str]) -> tuple[float, float]:
-    """Median and 95th percentile in milliseconds, after warm-up."""
+def percentiles(question: Question, typed: Sequence[str]) -> tuple[float, float, float]:
+    """Median and 95th percentile of the processor's milliseconds, and the latter by the wall clock, after warm-up."""
     for text in typed[:WARM]:
         question(text)
-    taken = []
+    worked, taken = [], []
     for text in typed[WARM:]:
-        begun = time.perf_counter()
+        begun, cpu = time.perf_counter(), time.process_time()
         question(text)
+        worked.append((time.process_time() - cpu) * 1000)
         taken.append((time.perf_counter() - begun) * 1000)
-    return statistics.median(taken), sorted(taken)[int(len(taken) * 0.95)]
+    place = int(len(taken) * 0.95)
+    return statistics.median(worked), sorted(worked)[place], sorted(taken)[place]
 
 
 def questions(record: Record) -> dict[str, tuple[Question, float]]:
@@ -171,9 +169,9 @@ def test_answers_do_not_wait_for_the_list_to_end(shelf: dict[int, Record]) -> No
     for count, record in shelf.items():
         typed = typed_as(count)
         for name, (question, bound) in questions(record).items():
-            median, tail = percentiles(question, typed[name])
+            median, tail, wall = percentiles(question, typed[name])
             medians.setdefault(name, []).append(median)
-            note(f"{name}, {count:,} numbers, p95", tail / 1000, "median", median / 1000, tail / median, f"{bound} ms")
+            note(f"{name}, {count:,} numbers, p95", tail / 1000, "p95, wall", wall / 1000, wall / tail, f"{bound} ms")
             if FULL:
                 assert tail <= bound, name
     for name, of_lengths in medians.items():
@@ -199,8 +197,8 @@ def test_a_hub_is_cut_and_says_so(shelf: dict[int, Record]) -> None:
     record = shelf[COUNTS[-1]]
     member = part_lists.numbers(COUNTS[-1])[-7][0]
     for text in (part_lists.HUB, member):
-        median, tail = percentiles(lambda asked: checking.check(record, asked), [text] * (WARM + 20))
-        note(f"hub of {HUB:,}, asked {text}, p95", tail / 1000, "median", median / 1000, tail / median, "100 ms")
+        _, tail, wall = percentiles(lambda asked: checking.check(record, asked), [text] * (WARM + 40))
+        note(f"hub of {HUB:,}, asked {text}, p95", tail / 1000, "p95, wall", wall / 1000, wall / tail, "100 ms")
         answer = checking.check(record, text)
         assert answer.bounded
         assert len(answer.leads_to) == 500

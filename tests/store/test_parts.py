@@ -9,7 +9,7 @@ import pytest
 from store import jobs, parts
 from store.errors import NotFound, Refused
 from store.parts import by_size, checking, fitting, numbers
-from store.parts.checking import Check
+from store.parts.answers import Check
 from store.records import Record
 from store.rules.attributes import Fits
 from store.rules.interchange import Trust
