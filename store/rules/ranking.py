@@ -57,19 +57,23 @@ def _best(
 ) -> NDArray[np.int64]:  # fmt: skip
     if not len(texts) or most <= 0:
         return texts[:0]
-    cost = np.zeros(len(texts), np.int64)
+    here = [one[texts] for one in codes]
+    cost = np.zeros(len(texts), np.uint8)
+    for one in here:
+        cost += np.where(one != 0, FAR + 1 - (one >> _PLACE_BITS), 0).astype(np.uint8)
+    if len(texts) > most:  # texts too dear to come among the first are not looked at further
+        enough = np.cumsum(np.bincount(cost)) >= most
+        kept = cost <= np.argmax(enough)
+        texts, cost, here = texts[kept], cost[kept], [one[kept] for one in here]
     first = np.full(len(texts), _LAST, np.int64)
     last = np.zeros(len(texts), np.int64)
-    for one in codes:
-        here = one[texts]
-        place = (here & _LAST).astype(np.int64)
-        is_found = here != 0
-        cost += np.where(is_found, FAR + 1 - (here >> _PLACE_BITS), 0)
-        np.minimum(first, np.where(is_found, place, _LAST), out=first)
-        np.maximum(last, np.where(is_found, place, 0), out=last)
+    for one in here:
+        place = (one & _LAST).astype(np.int64)
+        np.minimum(first, np.where(one != 0, place, _LAST), out=first)
+        np.maximum(last, place, out=last)
     between = np.maximum(last - first - (words - 1), 0)
     far = np.searchsorted(_NEAR, between)
-    rank = (((127 - np.minimum(cost, 127)) * 8 + (7 - far)) << 32) | at[texts]
+    rank = (((255 - cost.astype(np.int64)) * 8 + (7 - far)) << 32) | at[texts]
     return texts[top(rank, lambda where: ties(texts[where]), most)]
 
 

@@ -14,6 +14,8 @@ from rapidfuzz.distance import OSA
 from store.rules.spelling import SIGNATURE_BITS_A_SLIP, Neighbour, signature
 from store.rules.words import LONGEST
 
+MOST_KEPT = 256
+
 
 class Lexicon:
     """Words by number (from 0, in the order of their first coming), in how many texts each stands, and their neighbours.
@@ -27,6 +29,7 @@ class Lexicon:
         self._frequencies = (
             array("i", [0] * len(self.words)) if frequencies is None else array("i", frequencies.tobytes())
         )
+        self._known_near: dict[tuple[str, int], list[Neighbour]] = {}
         self._sorted = 0
         self._signatures: NDArray[np.uint64] = np.zeros(0, np.uint64)
         self._by_length: NDArray[np.int32] = np.zeros(0, np.int32)
@@ -48,6 +51,7 @@ class Lexicon:
     def count(self, number: int, texts: int) -> None:
         """So many more texts (fewer, when negative) hold the word."""
         self._frequencies[number] += texts
+        self._known_near.clear()
 
     def frequency(self, word: str) -> int:
         """In how many texts a word stands."""
@@ -59,9 +63,20 @@ class Lexicon:
         return np.array(self._frequencies, np.int32)
 
     def near(self, word: str, slips: int) -> list[Neighbour]:
-        """Every word at most `slips` away, `word` itself left out, in no particular order."""
+        """Every word at most `slips` away, `word` itself left out, in no particular order.
+
+        Answers are kept until a text comes or goes: as one types, most words of a query stay the same.
+        """
         if slips < 1:
             return []
+        known = self._known_near.get((word, slips))
+        if known is None:
+            if len(self._known_near) >= MOST_KEPT:
+                self._known_near.clear()
+            known = self._known_near[word, slips] = self._near(word, slips)
+        return known
+
+    def _near(self, word: str, slips: int) -> list[Neighbour]:
         self._sort()
         low, high = max(1, len(word) - slips), min(LONGEST, len(word) + slips)
         if low > high:

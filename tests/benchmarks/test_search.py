@@ -92,10 +92,10 @@ def test_a_new_note_costs_little(path: Path) -> None:
         with record.write() as conn:
             conn.exec_driver_sql(
                 "INSERT INTO note(job_id, at, by, text) VALUES (1, '2026-06-01T00:00:00Z', 'AB', ?)",
-                (f"qqzz new{n} note",),
+                (f"zqzqxjqzqx new{n} note",),
             )
         begun = time.perf_counter()
-        assert len(search.find(record, "qqzz").hits) == n + 1
+        assert len(search.find(record, "zqzqxjqzqx").hits) == n + 1
         times.append(time.perf_counter() - begun)
     assert 1000 * sorted(times)[18] <= MOST_P95_MS
     record.close()
