@@ -94,3 +94,18 @@ def differences(record: Record) -> list[str]:
     with record.read() as conn:
         present: Index = index.of(record, conn)
         return index.differences(present, index.build(conn))
+
+
+def mend(record: Record) -> list[str]:
+    """Compare the index kept beside the record with the rows, where there is one, and make it anew where they differ.
+
+    Returns what differed, empty where nothing did.
+    """
+    from store.search import index
+
+    if not index.file_of(record).exists():
+        return []
+    found = differences(record)
+    if found:
+        rebuild(record)
+    return found

@@ -242,6 +242,23 @@ def test_differences_are_found(record: Record, job: str) -> None:
     assert search.differences(record) == ["words of the search index point to other texts than those of the record"]
 
 
+def test_a_kept_index_that_differs_is_mended(record: Record, job: str) -> None:
+    """An index file that is whole and says otherwise than the rows is found out and made anew."""
+    _filled(record, job)
+    before = search.find(record, "contacts")
+    assert search.mend(record) == []
+    known: index.Index = record.cache.pop("search")
+    known.shelf.take_off(before.hits[0].row)
+    with record.read() as conn:
+        from store.search import sources
+
+        snapshot.save(known, index.file_of(record), sources.head(conn))
+    assert search.mend(record) == ["1 texts of the record are not in the search index"]
+    record.cache.clear()
+    assert search.find(record, "contacts") == before
+    assert search.mend(record) == []
+
+
 @pytest.mark.parametrize("harm", ["cut", "flip", "text", "empty", "other record"])
 def test_a_damaged_file_is_left_aside(record: Record, job: str, harm: str) -> None:
     """A file cut short, changed, of another kind, or of a state that the record no longer has is made anew."""

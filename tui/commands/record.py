@@ -24,7 +24,11 @@ def _quiet(what: str, done: int) -> None:
 @as_json
 @on_record
 def verify(record: Record, head: str | None, as_json: bool) -> None:
-    """Verify the whole record: the file, the audit chain, every row, judgements, frozen reports."""
+    """Verify the whole record: the file, the audit chain, every row, judgements, frozen reports.
+
+    The index of the search, a cache beside the record, is compared with it too, and made anew where it differs.
+    """
+    from store import search
     from store import verify as store_verify
     from store.errors import Refused
 
@@ -33,6 +37,8 @@ def verify(record: Record, head: str | None, as_json: bool) -> None:
         raise Refused("this record never had that head")
     try:
         found = store_verify.verify(record, progress() or _quiet)
+        for difference in () if found.wrong else search.mend(record):
+            click.echo(f"{difference}; the index was made anew", err=True)
     finally:
         end_progress()
     if as_json:
