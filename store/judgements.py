@@ -105,6 +105,17 @@ def rebuild(record: Record, conn: Connection, job: Judgeable) -> None:
         refresh(record, conn, job, stage, [known.by_id[int(i)].name for i in measured])
 
 
+def rebuild_all(record: Record, conn: Connection) -> int:
+    """Judge every job anew, inside a write transaction; returns how many judgements there are."""
+    driver(conn).execute("DELETE FROM judgement")
+    known, owned, count = catalogue(record, conn), gauges.by_id(record, conn), 0
+    for (job_id,) in rows(conn, "SELECT id FROM job ORDER BY id"):
+        made = _all_of(record, conn, known, owned, job_id)
+        driver(conn).executemany(_PUT, made.values())
+        count += len(made)
+    return count
+
+
 def compare(record: Record, job_ids: Sequence[int]) -> tuple[int, tuple[str, str] | None]:
     """Judge jobs anew and hold it against what is kept: how many judgements stand, and the first that does not."""
     stand = 0

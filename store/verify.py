@@ -10,7 +10,7 @@ import hashlib
 import json
 import sqlite3
 from collections.abc import Callable, Iterator, Sequence
-from concurrent.futures import ProcessPoolExecutor
+from concurrent.futures import Future, ProcessPoolExecutor
 from dataclasses import dataclass, field
 from multiprocessing import get_context
 from pathlib import Path
@@ -83,9 +83,10 @@ def verify_file(path: Path, progress: Progress = lambda what, done: None) -> Ver
         _file(raw, progress)
         _schema(raw)
         _read_chain(raw, chain, progress)
-        rows = _rows(raw, chain, progress)
-        reports = _reports(raw, chain, progress)
-        judgements = _judgements(path, raw, progress)
+        with _Judging(path, raw) as judging:  # on the other cores, while the rows pass by here
+            rows = _rows(raw, chain, progress)
+            reports = _reports(raw, chain, progress)
+            judgements = judging.count(progress)
     except _Found as found:
         wrong = found.wrong
     except sqlite3.DatabaseError as fault:
@@ -290,32 +291,42 @@ def _reports(raw: sqlite3.Connection, chain: _Chain, progress: Progress) -> int:
     return count
 
 
-def _judgements(path: Path, raw: sqlite3.Connection, progress: Progress) -> int:
-    """Every kept judgement against what judging the readings anew gives; on every core where there is much to do."""
-    ids = [r[0] for r in raw.execute("SELECT id FROM job ORDER BY id")]
-    orphans = raw.execute("SELECT job_id FROM judgement WHERE job_id NOT IN (SELECT id FROM job) LIMIT 1").fetchone()
-    if orphans:
-        raise _Found(f"judgement of job {orphans[0]}", "belongs to no job")
-    chunks = [ids[n : n + CHUNK] for n in range(0, len(ids), CHUNK)]
-    total = 0
-    for done, (count, wrong) in enumerate(_each(path, chunks), start=1):
-        if wrong is not None:
-            raise _Found(*wrong)
-        total += count
-        progress("judgements, jobs", min(done * CHUNK, len(ids)))
-    return total
-
-
 _Answer = tuple[int, tuple[str, str] | None]
 
 
-def _each(path: Path, chunks: list[list[int]]) -> Iterator[_Answer]:
-    if len(chunks) <= 2:
-        for chunk in chunks:
-            yield _judge_chunk(str(path), chunk)
-        return
-    with ProcessPoolExecutor(mp_context=get_context("spawn")) as pool:
-        yield from pool.map(_judge_chunk, [str(path)] * len(chunks), chunks)
+class _Judging:
+    """Every kept judgement held against what judging the readings anew gives; in other processes where there is much to do."""
+
+    def __init__(self, path: Path, raw: sqlite3.Connection) -> None:
+        self.path, self.raw = path, raw
+        self.ids = [r[0] for r in raw.execute("SELECT id FROM job ORDER BY id")]
+        self.chunks = [self.ids[n : n + CHUNK] for n in range(0, len(self.ids), CHUNK)]
+        self.pool: ProcessPoolExecutor | None = None
+        self.answers: list[Future[_Answer]] = []
+
+    def __enter__(self) -> _Judging:
+        if len(self.chunks) > 2:
+            self.pool = ProcessPoolExecutor(mp_context=get_context("spawn"))
+            self.answers = [self.pool.submit(_judge_chunk, str(self.path), chunk) for chunk in self.chunks]
+        return self
+
+    def __exit__(self, *fault: object) -> None:
+        if self.pool is not None:
+            self.pool.shutdown(cancel_futures=True)
+
+    def count(self, progress: Progress) -> int:
+        """How many judgements stand. Raises _Found for the first that does not."""
+        orphan = self.raw.execute("SELECT job_id FROM judgement WHERE job_id NOT IN (SELECT id FROM job) LIMIT 1").fetchone()
+        if orphan:
+            raise _Found(f"judgement of job {orphan[0]}", "belongs to no job")
+        total = 0
+        for n, chunk in enumerate(self.chunks):
+            stand, wrong = self.answers[n].result() if self.answers else _judge_chunk(str(self.path), chunk)
+            if wrong is not None:
+                raise _Found(*wrong)
+            total += stand
+            progress("judgements, jobs", min((n + 1) * CHUNK, len(self.ids)))
+        return total
 
 
 def _judge_chunk(path: str, ids: list[int]) -> _Answer:

@@ -65,13 +65,19 @@ def combine(variances: Iterable[Fraction | None]) -> Fraction | None:
 
 def conformance(value: Fraction, low: Fraction | None, high: Fraction | None, variance: Fraction) -> float:
     """The probability that the size lies within its limits: Phi((high - y)/u) - Phi((low - y)/u) (JCGM 106:2012, 7.3)."""
-    u = sqrt(float(variance))
+    return conformance_of(
+        None if low is None else float(low - value), None if high is None else float(high - value), float(variance)
+    )
+
+
+def conformance_of(below: float | None, above: float | None, variance: float) -> float:
+    """The same by the distances low - y and high - y; None where there is no such end."""
+    u = sqrt(variance)
     if u == 0.0:
-        inside = (low is None or value >= low) and (high is None or value <= high)
-        return 1.0 if inside else 0.0
-    above = 1.0 if high is None else phi(float(high - value) / u)
-    below = 0.0 if low is None else phi(float(low - value) / u)
-    return max(0.0, above - below)
+        return 1.0 if (below is None or below <= 0) and (above is None or above >= 0) else 0.0
+    upper = 1.0 if above is None else phi(above / u)
+    lower = 0.0 if below is None else phi(below / u)
+    return max(0.0, upper - lower)
 
 
 def phi(z: float) -> float:

@@ -13,7 +13,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from enum import StrEnum
 from fractions import Fraction
-from math import floor
+from math import floor, lcm
 from typing import Any
 
 from store.rules import certainty, quantities
@@ -105,7 +105,7 @@ class Judgement:
 
 
 _GUARD = {Rule.simple: Fraction(0), Rule.guarded_165u: Fraction("1.65"), Rule.guarded_u: Fraction(2)}
-_NARROW = 5
+_NARROW = Fraction(5)
 _SURE = 0.95
 
 
@@ -153,16 +153,61 @@ def decide(
             Verdict.no_limit, statistic, value, unit, at, count, limit.expected if limit else 1, variance, places=places
         )
     rule = limit.rule if variance is not None else Rule.simple
-    probability = None if variance is None else certainty.conformance(value, limit.low, limit.high, variance)
-    verdict, reason = _verdict(value, limit, rule, variance, probability)
+    scaled = _Scaled(value, limit)
+    probability = None if variance is None else scaled.conformance(variance)
+    verdict, reason = _verdict(scaled, limit, rule, variance, probability)
     if variance is None and limit.rule is not Rule.simple:
         reason = reason or "unknown-u"
     if count < limit.expected and verdict is not Verdict.out:
         verdict, reason = Verdict.not_measured, "short"
     return Judgement(
         verdict, statistic, value, unit, at, count, limit.expected, variance, rule, probability,
-        wear_used(value, limit), places, reason,
+        scaled.wear_used(), places, reason,
     )  # fmt: skip
+
+
+class _Scaled:
+    """A value with its limits as whole numbers over one denominator: exact as Fractions are, and several times faster."""
+
+    __slots__ = ("high", "low", "new", "over", "value")
+
+    def __init__(self, value: Fraction, limit: Limit) -> None:
+        sizes = [size for size in (value, limit.low, limit.high, limit.new) if size is not None]
+        self.over = over = lcm(*(size.denominator for size in sizes))
+        self.value = value.numerator * (over // value.denominator)
+        self.low, self.high, self.new = (
+            None if size is None else size.numerator * (over // size.denominator)
+            for size in (limit.low, limit.high, limit.new)
+        )
+
+    def margin(self) -> int:
+        """How far inside the nearer end the value lies; negative beyond."""
+        if self.low is None:
+            assert self.high is not None
+            return self.high - self.value
+        if self.high is None:
+            return self.value - self.low
+        return min(self.value - self.low, self.high - self.value)
+
+    def is_within(self, distance: int, times: Fraction, variance: Fraction) -> bool:
+        """Whether a distance is less than so many times u, by their squares."""
+        ours = (distance * times.denominator) ** 2 * variance.denominator
+        return ours < (times.numerator * self.over) ** 2 * variance.numerator
+
+    def conformance(self, variance: Fraction) -> float:
+        """The probability of conformity (JCGM 106:2012, 7.3)."""
+        above = None if self.high is None else (self.high - self.value) / self.over
+        below = None if self.low is None else (self.low - self.value) / self.over
+        return certainty.conformance_of(below, above, variance.numerator / variance.denominator)
+
+    def wear_used(self) -> float | None:
+        """As `wear_used`."""
+        if self.new is None:
+            return None
+        end = self.low if self.high is None else self.high if self.low is None else None
+        if end is None:
+            end = self.low if self.value < self.new else self.high
+        return None if end is None or end == self.new else (self.new - self.value) / (self.new - end)
 
 
 def margin(value: Fraction, limit: Limit) -> Fraction:
@@ -177,30 +222,26 @@ def margin(value: Fraction, limit: Limit) -> Fraction:
 
 def wear_used(value: Fraction, limit: Limit) -> float | None:
     """(new - y)/(new - limit) on the side on which the size wears; None without a new size or at a limit of it."""
-    if limit.new is None:
-        return None
-    ends = [end for end in (limit.low, limit.high) if end is not None and end != limit.new]
-    if limit.low is not None and limit.high is not None:
-        ends = [limit.low] if value < limit.new else [limit.high]
-        ends = [end for end in ends if end != limit.new]
-    if not ends:
-        return None
-    return float((limit.new - value) / (limit.new - ends[0]))
+    return _Scaled(value, limit).wear_used()
 
 
 def _verdict(
-    value: Fraction, limit: Limit, rule: Rule, variance: Fraction | None, probability: float | None
+    scaled: _Scaled, limit: Limit, rule: Rule, variance: Fraction | None, probability: float | None
 ) -> tuple[Verdict, str]:
-    inside = margin(value, limit)
-    if rule is Rule.simple or variance is None or variance == 0:
+    inside = scaled.margin()
+    if rule is Rule.simple or variance is None or variance.numerator == 0:
         passes = inside > 0 or (inside == 0 and limit.equal_passes)
         return (Verdict.in_ if passes else Verdict.out), ""
-    if limit.low is not None and limit.high is not None and (limit.high - limit.low) ** 2 < _NARROW**2 * variance:
+    if (
+        scaled.low is not None
+        and scaled.high is not None
+        and scaled.is_within(scaled.high - scaled.low, _NARROW, variance)
+    ):
         assert probability is not None
         if probability >= _SURE:
             return Verdict.in_, "narrow"
         return (Verdict.out if probability <= 1 - _SURE else Verdict.in_doubt), "narrow"
-    if inside * inside < _GUARD[rule] ** 2 * variance:
+    if scaled.is_within(inside, _GUARD[rule], variance):
         return Verdict.in_doubt, ""
     return (Verdict.in_ if inside > 0 else Verdict.out), ""
 

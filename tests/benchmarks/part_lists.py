@@ -45,7 +45,9 @@ def write(folder: Path, count: int, hub: int = 0) -> tuple[Path, Path]:
         lines = csv.writer(out)
         lines.writerow(("from_number", "from_maker", "relation", "to_number", "to_maker", "caveat", "source", "dated"))
         lines.writerows(_relations(known, count * 3 // 2 - hub, chance))
-        lines.writerows((HUB, "Alder", "interchanges-with", *one, "", "List 99", "2024-01-01") for one in known[len(known) - hub :])
+        lines.writerows(
+            (HUB, "Alder", "interchanges-with", *one, "", "List 99", "2024-01-01") for one in known[len(known) - hub :]
+        )
     return first, second
 
 
