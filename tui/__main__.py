@@ -2,4 +2,5 @@
 
 from tui.commands import main
 
-main()
+if __name__ == "__main__":
+    main()
