@@ -47,7 +47,7 @@ async def test_a_slip_finds_the_note_and_opens_it(path: Path, size: tuple[int, i
         await keys(pilot, "enter")
         await settled(pilot)
         shown = text_of(pilot)
-        assert "1001  KS-100 starter" in shown
+        assert "1001 > notes   KS-100 starter" in shown
         assert "> " in shown
         assert "solenoid contacts burned [/] disc turned over" in shown
 
@@ -90,14 +90,12 @@ async def test_a_note_written_elsewhere_is_found(path: Path) -> None:
 
 
 async def test_a_finding_is_offered_and_taken_with_one_key(path: Path) -> None:
-    """What is typed looks like a finding; F9 takes it, and it is not offered again."""
+    """What is typed looks like a finding; F2 takes it, and it is not offered again."""
     async with opened(path) as pilot:
-        await keys(pilot, "enter", "f5")
-        while pilot.app.screen.pane != "notes":
-            await keys(pilot, "f5")
+        await keys(pilot, "enter", "f7")
         await typed(pilot, "sol contcts burnt")
         assert "looks like: solenoid: contacts burned" in text_of(pilot)
-        await keys(pilot, "f9")
+        await keys(pilot, "f2")
         shown = text_of(pilot)
         assert "solenoid: contacts burned, overheating" in shown
         assert "looks like" not in shown

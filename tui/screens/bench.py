@@ -28,6 +28,7 @@ class Bench(Standing):
         "out, how many the gauge cannot tell (doubt). Type to search tag, serial, model or customer; arrows move, Enter opens. "
         "F2 takes in a core: a unit that was released before becomes a comeback at once."
     )
+    KEY_LINES = 2
     CAUTIONS = (
         "Big frames and armatures are heavy: hoist them, and never lift an armature by its commutator.",
         "Dust of old insulation may hold asbestos: do not dry-blow it; vacuum or wipe it wet.",
@@ -36,7 +37,7 @@ class Bench(Standing):
         Binding("f2", "take_in", "take in", tooltip="take in a core"),
         Binding("f3", "ended", "ended", tooltip="show jobs that have ended too, or only open ones"),
         Binding("f4", "who", "who", tooltip="say who works here now"),
-        *(Binding(p.key, f"app.go('{name}')", p.title.lower(), show=False) for name, p in PLACES.items() if p.key),
+        *(Binding(p.key, f"app.go('{name}')", p.title.lower(), tooltip=p.says) for name, p in PLACES.items() if p.key),
     ]
 
     def __init__(self) -> None:
@@ -126,13 +127,17 @@ class Bench(Standing):
     def _show(self, answer: Any) -> None:
         lines, now = answer
         what = "job" if self.with_ended else "open job"
-        found = "found" if self.query_one("#search", Input).value.strip() else "on the bench" if not self.with_ended else ""
+        found = (
+            "found" if self.query_one("#search", Input).value.strip() else "on the bench" if not self.with_ended else ""
+        )
         self.query_one("#counts", Static).update(f"{len(lines)} {what}{'' if len(lines) == 1 else 's'} {found}")
         items = []
         for stands in ORDER:
             here = [line for line in lines if line.stands == stands]
             if here:
-                items.append(Item((f"{stands}  {len(here)}{'   ' + here[0].next if here[0].next else ''}",), heading=True))
+                items.append(
+                    Item((f"{stands}  {len(here)}{'   ' + here[0].next if here[0].next else ''}",), heading=True)
+                )
                 items += [_item(line, now) for line in here]
         self.query_one("#jobs", Listing).show(items)
 

@@ -1,4 +1,4 @@
-"""What a sheet looks like: the store's rows as the cells, faces and explanations that the Job screen draws."""
+"""What a sheet looks like: the store's rows as the cells and faces that the reading sheet draws."""
 
 from __future__ import annotations
 
@@ -6,11 +6,8 @@ from collections.abc import Mapping
 from dataclasses import replace
 from typing import Any
 
-from rich.text import Text
-
 from store.rules.wear import WearRule
-from tui.widgets import wear_rule
-from tui.widgets.keying import Asking, Cell, Keying, Row, State
+from tui.widgets.keying import Cell, Row, State
 from tui.widgets.sheet import Face
 
 Which = tuple[str, str, str]
@@ -51,13 +48,13 @@ def shown(reading: Any) -> str:
     return word + (f" {reading.typed.detail}" if reading.typed.detail else "")
 
 
-def faces(sheet: Any) -> list[Face]:
+def faces(sheet: Any, questions: Mapping[Which, str]) -> list[Face]:
     """The faces of all rows, each first of its component with the heading."""
-    return [face(sheet, n) for n in range(len(sheet.rows))]
+    return [face(sheet, n, questions) for n in range(len(sheet.rows))]
 
 
-def face(sheet: Any, n: int) -> Face:
-    """What row `n` says beside its cells."""
+def face(sheet: Any, n: int, questions: Mapping[Which, str]) -> Face:
+    """What row `n` says beside its cells; `questions` are asked of some of its positions."""
     row = sheet.rows[n]
     group = row.characteristic.component
     opens = n == 0 or sheet.rows[n - 1].characteristic.component != group
@@ -65,24 +62,26 @@ def face(sheet: Any, n: int) -> Face:
     return Face(
         label=row.characteristic.label,
         limit=limit(row),
+        short_limit=limit(row, short=True),
         verdict=verdict(row),
         group=group if opens else "",
         derived=_derived(row),
         worst=judgement.worst_at if judgement else "",
         rule=rule(row),
+        asked=frozenset(which[2] for which in questions if which[:2] == (sheet.stage, row.characteristic.name)),
     )
 
 
-def limit(row: Any) -> str:
-    """The limit in twelve columns: `9.5 mm min`; nothing where there is none."""
+def limit(row: Any, *, short: bool = False) -> str:
+    """The limit: `≥ 9.5 mm`, `≤ 0.05 mm`, `0.1-0.3 mm`, `pass`; its unit where there is none. `short` leaves the unit out."""
     if row.limit is None:
-        return "" if row.characteristic.derive or not row.characteristic.unit else row.characteristic.unit
-    low, high, unit = row.limit.low, row.limit.high, row.limit.unit
+        return "" if row.characteristic.derive or not row.characteristic.unit else str(row.characteristic.unit)
+    low, high, unit = row.limit.low, row.limit.high, "" if short else f" {row.limit.unit}"
     if low is not None and high is not None:
-        return f"{low}-{high}" if len(low) + len(high) > 8 else f"{low}-{high} {unit}"
+        return f"{low}-{high}{unit}"
     if low is None and high is None:
         return "pass"
-    return f"≥ {low} {unit}" if low is not None else f"≤ {high} {unit}"
+    return f"≥ {low}{unit}" if low is not None else f"≤ {high}{unit}"
 
 
 def verdict(row: Any) -> str:
@@ -107,73 +106,24 @@ def _derived(row: Any) -> str:
 
 
 def rule(row: Any) -> WearRule | None:
-    """The wear rule of a row, None where there is nothing to draw."""
-    if row.limit is None or row.judged is None or row.judged.judgement.value is None:
+    """The wear rule of a row, with the readings there are; None where there is no size to draw."""
+    if row.limit is None:
         return None
     from store.reports.gather import sizes
     from store.rules.wear import wear_rule as make
 
-    exact, judgement = row.limit.limit, row.judged.judgement
+    exact, judgement = row.limit.limit, row.judged.judgement if row.judged else None
+    if exact.low is None and exact.high is None:
+        return None
+    faint = sizes(row.other, exact.unit)
+    if judgement is None or judgement.value is None:
+        return make(exact, sizes(row.readings, exact.unit), faint=faint)
     values = sizes(row.readings, exact.unit) or [judgement.value]
-    return make(exact, values, judgement.value, judgement.variance, sizes(row.other, exact.unit))
+    return make(exact, values, judgement.value, judgement.variance, faint)
 
 
-def with_judged(sheet: Any, n: int, judged: Any, keys: Row) -> Any:
+def with_judged(sheet: Any, n: int, judged: Any) -> Any:
     """The sheet with a new judgement in row `n`; the full rows follow with the next reading of the sheet."""
     changed = list(sheet.rows)
     changed[n] = replace(changed[n], judged=judged)
     return replace(sheet, rows=tuple(changed))
-
-
-def explanation(
-    sheet: Any, keying: Keying, questions: Mapping[Which, str], gauges: Mapping[str, str], width: int
-) -> Text:
-    """Six lines about the row under the cursor; what is being asked comes first."""
-    text = Text(no_wrap=True, overflow="ellipsis")
-    if keying.aside:
-        text.append(f"no place for: {', '.join(keying.aside[-6:])}  (every asked cell is filled)\n", style="bold")
-    if keying.at is None:
-        text.append("Every row that is asked for has its readings. Arrows move; F2 the other stage, F6 the report.")
-        return text
-    row = sheet.rows[keying.at[0]]
-    cell = keying.rows[keying.at[0]].cells[keying.at[1]]
-    one = row.characteristic
-    place = f"{one.noun} {cell.position}".strip() if len(keying.rows[keying.at[0]].cells) > 1 else ""
-    _first_line(text, keying, cell, one, place)
-    question = questions.get((sheet.stage, one.name, cell.position))
-    if question:
-        text.append(f"look again: {question}\n", style="bold italic")
-    if row.judged is not None:
-        text.append(f"{row.judged.because}\n")
-    drawn = rule(row)
-    if drawn is not None:
-        text.append(f"{wear_rule.draw(drawn, min(60, max(20, width - 24)))}")
-        used = row.judged.judgement.wear_used
-        text.append(f"  {used:.0%} of the wear used\n" if used is not None else "\n")
-    before = [f"{shown(r)}" for r in row.other]
-    if before:
-        text.append(f"{'as left' if sheet.stage == 'as-found' else 'as found'}: {'  '.join(before[:8])}\n")
-    if row.limit is not None:
-        text.append(
-            f"limit from {row.limit.source}, revision {sheet.job.revision}{'  ' + row.limit.note if row.limit.note else ''}\n"
-        )
-    elif not one.derive:
-        text.append("no limit is entered for this model: F7 enters one\n")
-    if one.caution:
-        text.append(f"CAUTION {one.caution}\n", style="bold")
-    text.append(f"{one.datum}  ({gauges.get(one.gauge) or one.gauge or 'no gauge'})")
-    return text
-
-
-def _first_line(text: Text, keying: Keying, cell: Cell, one: Any, place: str) -> None:
-    if keying.asking is not Asking.value:
-        held = f" {cell.text} to {keying.held}" if keying.held else ""
-        text.append(
-            f"{one.label} {place}{held}: {keying.asking.value}? {keying.buffer}▏  Enter  Esc\n", style="bold reverse"
-        )
-    elif cell.state is State.refused:
-        text.append(f"{one.label} {place}: {cell.why}\n", style="bold reverse")
-    elif keying.buffer and len(keying.buffer) > 6:
-        text.append(f"{one.label} {place}: {keying.buffer[-200:]}▏\n")
-    else:
-        text.append(f"{one.label} {place}  ", style="bold")

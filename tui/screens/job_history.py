@@ -14,6 +14,8 @@ from tui.widgets.listing import Column, Item, Listing
 class JobHistory(Vertical):
     """Jobs of the unit on top, sizes below; Enter on a job opens it."""
 
+    DEFAULT_CSS = "JobHistory Listing { margin: 0 1; }"
+
     def __init__(self, *, id: str | None = None) -> None:  # noqa: A002
         super().__init__(id=id)
         self.job_screen: Any = None
@@ -22,7 +24,7 @@ class JobHistory(Vertical):
         """One list with headings."""
         yield Listing(
             [
-                Column("", 26),
+                Column("visit", 20),
                 Column("stage", 9, quiet=True),
                 Column("size", 14, right=True),
                 Column("verdict", 12),

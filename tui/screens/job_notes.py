@@ -21,7 +21,7 @@ class JobNotes(Vertical):
     JobNotes #offer { height: 1; padding: 0 1; color: $quiet; }
     """
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("f9", "take", "take finding", tooltip="take the finding that the note looks like")
+        Binding("f2", "take", "take finding", tooltip="take the finding that the note looks like")
     ]
 
     def __init__(self, *, id: str | None = None) -> None:  # noqa: A002
@@ -108,7 +108,7 @@ class JobNotes(Vertical):
     def _offer(self, offers: Any) -> None:
         self.offers = [offer for offer in offers if (offer.component, offer.mode) not in self.taken]
         said = "   ".join(f"{offer.component}: {offer.mode}" for offer in self.offers)
-        self.query_one("#offer", Static).update(f"looks like: {said}   F9 takes the first" if said else "")
+        self.query_one("#offer", Static).update(f"looks like: {said}   F2 takes the first" if said else "")
 
     def action_take(self) -> None:
         """Take the first finding that is offered; the next one comes to the front."""

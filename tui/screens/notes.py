@@ -64,7 +64,6 @@ class Notes(Standing):
         before = self.app.screen_stack[-2].query("#search").results(Input) if len(self.app.screen_stack) > 1 else ()
         for line in before:
             self.query_one("#ask", Input).value = self.text or line.value
-        super().on_mount()
 
     def record_opened(self) -> None:
         """Search at once; with nothing asked yet the index is made ready meanwhile."""

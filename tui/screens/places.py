@@ -36,16 +36,26 @@ PLACES = {
 
 @dataclass(frozen=True, slots=True)
 class Pane:
-    """A part of the Job screen: a widget with `show(job)`, called when it comes to the front or the job has changed."""
+    """A part of the Job screen: a widget with `show(job_screen)`, called each time that it comes to the front.
+
+    `key` leads to it from the sheet and back; `says` is what F1 tells of it. To add one: its file, and a line in PANES. A pane
+    reads and changes through `job_screen.ask`, takes the keys to one of its own widgets in `show`, and may have BINDINGS.
+    """
 
     module: str
     name: str
     title: str
+    key: str
+    says: str
 
 
 PANES = {
-    "notes": Pane("tui.screens.job_notes", "JobNotes", "notes"),
-    "history": Pane("tui.screens.job_history", "JobHistory", "history"),
+    "notes": Pane(
+        "tui.screens.job_notes", "JobNotes", "notes", "f7", "what was seen, in words that can be found again"
+    ),
+    "history": Pane(
+        "tui.screens.job_history", "JobHistory", "history", "f8", "earlier jobs of this unit, sizes over time"
+    ),
 }
 
 

@@ -41,6 +41,7 @@ class Standing(Screen[Any]):
 
     TITLE_WORDS = ""
     EXPLAINS = ""
+    KEY_LINES: ClassVar[int] = 1
     CAUTIONS: ClassVar[tuple[str, ...]] = ()
 
     class Answered(Message):
@@ -70,7 +71,7 @@ class Standing(Screen[Any]):
         """Top line, body, keys."""
         yield TopLine(id="top")
         yield from self.body()
-        yield KeyLine()
+        yield KeyLine(self.KEY_LINES)
 
     def body(self) -> ComposeResult:
         """What stands between the top line and the keys."""

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from rich.cells import cell_len
@@ -15,6 +15,7 @@ from textual.strip import Strip
 from textual.widget import Widget
 
 EXPLAIN = "explain"
+GAP = 2
 _KEYS = {"escape": "Esc", "delete": "Del", "enter": "Enter", "insert": "Ins", "pageup": "PgUp", "pagedown": "PgDn"}
 
 
@@ -37,10 +38,10 @@ def written(key: str) -> str:
 
 
 def keys_of(screen: Screen[Any]) -> Iterator[Key]:
-    """The keys that work on a screen now and are worth naming, one for each action, in the order of its bindings."""
+    """The keys that work on a screen now and are worth naming, one for each action: F keys by number, then the others."""
     named: dict[str, str] = getattr(screen, "key_names", {})
     seen = set()
-    for active in screen.active_bindings.values():
+    for active in sorted(screen.active_bindings.values(), key=lambda active: _rank(active.binding.key)):
         binding = active.binding
         if binding.description and binding.show and active.enabled and binding.action not in seen:
             seen.add(binding.action)
@@ -48,52 +49,74 @@ def keys_of(screen: Screen[Any]) -> Iterator[Key]:
             yield Key(written(binding.key), words, binding.tooltip or words, binding.action, active.node)
 
 
+def _rank(key: str) -> int:
+    return int(key[1:]) if key[:1] == "f" and key[1:].isdigit() else 100
+
+
 class KeyLine(Widget):
-    """The keys of its screen. A click on one is as good as the key."""
+    """The keys of its screen on one line or more. A click on one is as good as the key."""
 
     DEFAULT_CSS = "KeyLine { dock: bottom; height: 1; }"
 
-    def __init__(self) -> None:
+    def __init__(self, lines: int = 1) -> None:
         super().__init__()
-        self.spans: list[tuple[int, int, Key]] = []
+        self.lines = lines
+        self.spans: list[tuple[int, int, int, Key]] = []
 
     def on_mount(self) -> None:
         """Follow what works."""
+        self.styles.height = self.lines
         self.screen.bindings_updated_signal.subscribe(self, lambda _: self.refresh())
 
-    def fitting(self, room: int) -> list[Key]:
-        """The keys that find room, the one that explains last; where some do not, it promises them all."""
+    def fitting(self, room: int) -> list[list[Key]]:
+        """Line by line the keys that find room, the one that explains last; where some do not, it promises them all."""
         every = list(keys_of(self.screen))
         first = [key for key in every if key.action != EXPLAIN]
         last = [key for key in every if key.action == EXPLAIN]
-        if _length([*first, *last]) <= room:
-            return [*first, *last]
-        last = [Key(key.key, "all keys", key.says, key.action, key.node) for key in last]
-        while first and _length([*first, *last]) > room:
+        laid = _laid([*first, *last], room)
+        if len(laid) > self.lines:
+            last = [replace(key, words="all keys") for key in last]
+        while len(laid) > self.lines and first:
             first.pop()
-        return [*first, *last]
+            laid = _laid([*first, *last], room)
+        return laid
 
     def render_line(self, y: int) -> Strip:
         """Keys in brass, words quiet."""
         tones, width = self.app.theme_variables, self.size.width
         ground = Style(color=tones["quiet"], bgcolor=tones["panel"])
         brass = ground + Style(color=tones["brass"], bold=True)
+        laid = self.fitting(width - 2)
         segments, at = [Segment(" ", ground)], 1
-        self.spans = []
-        for key in self.fitting(width - 2):
-            length = _length([key])
-            self.spans.append((at, at + length, key))
+        self.spans = [span for span in self.spans if span[0] != y]
+        for key in laid[y] if y < len(laid) else ():
+            length = _length(key)
+            self.spans.append((y, at, at + length, key))
             segments += [Segment(key.key, brass), Segment(f" {key.words}  ", ground)]
-            at += length + 2
+            at += length + GAP
         return Strip(segments).adjust_cell_length(width, ground)
 
     async def on_click(self, event: events.Click) -> None:
         """Do what the key does."""
-        for begin, end, key in self.spans:
-            if begin <= event.x < end:
+        for line, begin, end, key in self.spans:
+            if line == event.y and begin <= event.x < end:
                 await self.app.run_action(key.action, key.node)
                 return
 
 
-def _length(keys: list[Key]) -> int:
-    return sum(cell_len(f"{key.key} {key.words}") for key in keys) + 2 * (len(keys) - 1)
+def _length(key: Key) -> int:
+    return cell_len(f"{key.key} {key.words}")
+
+
+def _laid(keys: list[Key], room: int) -> list[list[Key]]:
+    """Keys flowed into lines of so many columns."""
+    lines: list[list[Key]] = [[]]
+    at = 0
+    for key in keys:
+        length = _length(key)
+        if lines[-1] and at + length > room:
+            lines.append([])
+            at = 0
+        lines[-1].append(key)
+        at += length + GAP
+    return lines

@@ -31,15 +31,20 @@ TONES = {"out": "loud", "in doubt": "doubt", "not comparable": "doubt"}
 
 @dataclass(frozen=True, slots=True)
 class Face:
-    """What a row says beside its cells. `group` opens a new component above it; `derived` stands for its cells."""
+    """What a row says beside its cells. `group` opens a new component above it; `derived` stands for its cells.
+
+    `short_limit` is shown where `limit` finds no room; `asked` are positions whose reading may be a slip.
+    """
 
     label: str
     limit: str
     verdict: str
+    short_limit: str = ""
     group: str = ""
     derived: str = ""
     worst: str = ""
     rule: WearRule | None = None
+    asked: frozenset[str] = frozenset()
 
 
 class ReadingSheet(ScrollView, can_focus=True):
@@ -211,7 +216,7 @@ class ReadingSheet(ScrollView, can_focus=True):
             return Strip.blank(width, ground)
         heading, row = self.lines[line]
         if row < 0:
-            text = f"{heading} "
+            text = f" {heading} "
             rest = "─" * max(0, width - len(text))
             return Strip(
                 [Segment(text, ground + Style(bold=True)), Segment(rest, ground + Style(color=tones["hairline"]))]
@@ -224,7 +229,8 @@ class ReadingSheet(ScrollView, can_focus=True):
         is_here = self.keying.at is not None and self.keying.at[0] == row
         name = ground + Style(color=tones["brass"], bold=True) if is_here else ground if keys.is_asked else quiet
         wide, limit = self.left
-        segments = [Segment(_fit(face.label, wide - 1) + " ", name), Segment(_fit(face.limit, limit - 1) + " ", quiet)]
+        said = face.limit if len(face.limit) < limit else face.short_limit or face.limit
+        segments = [Segment(f" {_fit(face.label, wide - 2)} ", name), Segment(_fit(said, limit - 1) + " ", quiet)]
         begin, end = self._window(row)
         decimals = max((_decimals(c.text) for c in keys.cells), default=0)
         for column in range(begin, end):
@@ -258,6 +264,8 @@ class ReadingSheet(ScrollView, can_focus=True):
             and len(self.keying.rows[row].cells) > 1
         ):
             mark = "◂"
+        if cell.state is State.accepted and cell.position in self.faces[row].asked:
+            mark = "?"
         shown = _aligned(text, decimals, CELL - 2) if text else "·" if self.keying.rows[row].is_asked else " "
         if is_here:
             return self._here(shown + mark, tones)
