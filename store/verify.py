@@ -23,7 +23,7 @@ from store.sqlite.connections import connect
 Progress = Callable[[str, int], None]
 DERIVED = frozenset({"judgement", "text_change"})
 """Tables that are derived and verified by other means, or only say what is to be indexed anew."""
-CHUNK = 2000
+CHUNK = 5000
 
 
 @dataclass(frozen=True, slots=True)
