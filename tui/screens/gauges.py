@@ -37,7 +37,7 @@ class Gauges(Standing):
         yield Listing(
             [
                 Column("gauge", 14), Column("kind", 0), Column("resolution", 10, right=True), Column("U", 7, right=True),
-                Column("unit", 5), Column("calibrated", 10, quiet=True), Column("due", 11),
+                Column("unit", 5), Column("calibrated", 10, quiet=True, from_width=90), Column("due", 11),
             ],
             empty="no gauge yet: F2 enters one",
             id="gauges",

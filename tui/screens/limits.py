@@ -14,6 +14,13 @@ from tui.screens.form import Form, Line
 from tui.screens.standing import Standing
 from tui.widgets.listing import Column, Item, Listing
 
+SHEET = (
+    Column("characteristic", 26), Column("stage", 8, quiet=True, from_width=84), Column("limit", 20),
+    Column("readings", 8, right=True, quiet=True, from_width=84), Column("source", 0, quiet=True),
+)  # fmt: skip
+NAMED, REVISION = 26, 18
+STAGES = {"both": "as found and as left", "as-found": "as found", "as-left": "as left"}
+
 
 class Limits(Standing):
     """Models at the left, the sheet of the one under the cursor at the right."""
@@ -26,7 +33,12 @@ class Limits(Standing):
         "Enter on a model goes to its sheet; Enter on a line changes that limit, or enters one where there is none."
     )
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("f2", "revision", "revisions", tooltip="look at the revision before, then round to the newest"),
+        Binding(
+            "f2",
+            "revision",
+            "revisions",
+            tooltip="the revisions side by side, what differs marked; again: the newest alone",
+        ),
         Binding("f3", "copy", "copy from", tooltip="copy the sheet of another model"),
         Binding("f4", "propose", "propose", tooltip="what the shop's own as-left readings of this model would suggest"),
         Binding("f5", "new_model", "new model"),
@@ -37,8 +49,7 @@ class Limits(Standing):
     def __init__(self, model: str | None = None) -> None:
         super().__init__()
         self.model = model
-        self.number: int | None = None
-        self.known: list[Any] = []
+        self.side_by_side = False
         self.sheet: Any = None
 
     def body(self) -> ComposeResult:
@@ -46,14 +57,8 @@ class Limits(Standing):
         yield Static("", id="revision", markup=False)
         with Horizontal():
             yield Listing([Column("model", 0), Column("rev", 3, right=True)], empty="F5 enters a model", id="models")
-            yield Listing(
-                [
-                    Column("characteristic", 24), Column("stage", 8, quiet=True), Column("limit", 15), Column("=", 4, quiet=True),
-                    Column("n", 2, right=True, quiet=True), Column("source", 0, quiet=True),
-                ],
-                empty="no limits yet: Enter on a line enters one, F3 copies a sheet",
-                id="sheet",
-            )  # fmt: skip
+            yield Listing(SHEET, empty="no limits yet: Enter on a line enters one, F3 copies a sheet", id="sheet")
+        yield Static("", id="about", markup=False)
 
     def record_opened(self) -> None:
         """Read the models."""
@@ -80,7 +85,6 @@ class Limits(Standing):
     @on(Listing.Moved, "#models")
     def model_moved(self, message: Listing.Moved) -> None:
         """Show the newest sheet of the model under the cursor."""
-        self.number = None
         self.read_sheet(message.item.value)
 
     @on(Listing.Chosen, "#models")
@@ -89,44 +93,63 @@ class Limits(Standing):
         self.query_one("#sheet").focus()
 
     def read_sheet(self, model: Any) -> None:
-        """Ask for the sheet of a model, with every characteristic that has no limit below."""
-        number = self.number
+        """Ask for the newest sheet of a model with the characteristics that have no limit, or for its revisions."""
+        side_by_side = self.side_by_side
+        most = max(2, (self.query_one("#sheet").size.width - NAMED) // (REVISION + 1))
 
         def question() -> Any:
             from store import catalogue, limit_sheets
 
             assert self.record is not None
-            sheet = limit_sheets.sheet(self.record, model.number, number)
-            return (
-                model,
-                sheet,
-                limit_sheets.revisions(self.record, model.number),
-                catalogue.catalogue(self.record).of(model.kind),
-            )
+            known = limit_sheets.revisions(self.record, model.number)
+            wanted = known[-most:] if side_by_side else known[-1:]
+            sheets = [limit_sheets.sheet(self.record, model.number, revision.number) for revision in wanted]
+            return model, sheets, len(known), catalogue.catalogue(self.record).of(model.kind)
 
         self.ask("sheet", question, self._show_sheet)
 
     def _show_sheet(self, answer: Any) -> None:
-        model, self.sheet, revisions, characteristics = answer
-        self.known = list(revisions)
+        model, sheets, known, characteristics = answer
+        self.sheet = sheets[-1] if sheets else None
         said = f"{model.number}  {model.kind}  {model.volts} V  {model.rotation}"
         if self.sheet is not None:
             rev = self.sheet.revision
-            said += f"   revision {rev.number} of {len(revisions)}, {rev.decision.value}, {rev.at[:10]} by {rev.by}  {rev.why}"
+            said += f"   revision {rev.number} of {known}, {rev.decision.value}, {rev.at[:10]} by {rev.by}  {rev.why}"
         self.query_one("#revision", Static).update(said)
+        listing = self.query_one("#sheet", Listing)
+        if self.side_by_side and sheets:
+            listing.columns = (
+                Column("characteristic", NAMED), *(Column(f"revision {s.revision.number}", REVISION) for s in sheets),
+            )  # fmt: skip
+            listing.show(_compared(sheets, {c.name: c for c in characteristics}))
+            return
+        listing.columns = SHEET
         items, limited = [], set()
         for x in self.sheet.limits if self.sheet else ():
             limited.add(x.characteristic)
             one = next(c for c in characteristics if c.name == x.characteristic)
-            stage = "" if x.stage == "both" else x.stage.replace("as-", "")
-            equal = "fail" if x.at_limit == "fail" else ""
-            items.append(Item((one.label, stage, _limit(x), equal, str(x.count or ""), x.source), (one, x)))
-        rest = [
-            Item((c.label, "", "", "", "", ""), (c, None), "quiet") for c in characteristics if c.name not in limited
-        ]
+            stage = "" if x.stage == "both" else x.stage.replace("-", " ")
+            items.append(Item((one.label, stage, _limit(x), str(x.count or ""), x.source), (one, x)))
+        rest = [Item((c.label, "", "", "", ""), (c, None), "quiet") for c in characteristics if c.name not in limited]
         if rest:
             items += [Item(("without a limit",), heading=True), *rest]
-        self.query_one("#sheet", Listing).show(items)
+        listing.show(items)
+
+    @on(Listing.Moved, "#sheet")
+    def say_all(self, message: Listing.Moved) -> None:
+        """The limit under the cursor in full."""
+        one, x = message.item.value
+        said = f"{one.label}: "
+        if x is None:
+            said += f"no limit.  {one.datum}"
+        else:
+            new = f"new {x.new} {x.unit}, " if x.new else ""
+            equal = (
+                "" if one.statistic.value == "attribute" else f", equal to it {x.at_limit}es".replace("failes", "fails")
+            )
+            count = f", {x.count} readings" if x.count else ""
+            said += f"{new}{_limit(x)}{equal}, {STAGES[x.stage]}{count}.  {x.source}.  {x.note}"
+        self.query_one("#about", Static).update(said)
 
     @on(Listing.Chosen, "#sheet")
     def change(self, message: Listing.Chosen) -> None:
@@ -143,13 +166,11 @@ class Limits(Standing):
         return item.value if item else None
 
     def action_revision(self) -> None:
-        """The revision before; from the first round to the newest."""
-        if self.sheet is None or len(self.known) < 2:
-            return
-        numbers = [r.number for r in self.known]
-        here = numbers.index(self.sheet.revision.number)
-        self.number = numbers[here - 1]
-        self.read_sheet(self._model())
+        """The newest revisions side by side, or the newest alone."""
+        self.side_by_side = not self.side_by_side
+        model = self._model()
+        if model is not None:
+            self.read_sheet(model)
 
     def action_copy(self) -> None:
         """Copy the sheet of another model."""
@@ -236,6 +257,26 @@ class Limits(Standing):
             self.query_one("#models").focus()
         else:
             self.dismiss()
+
+
+def _compared(sheets: Any, characteristics: Any) -> list[Item]:
+    """A line for each limit of any revision; one that is not the same in all is marked."""
+    found: dict[tuple[str, str], list[Any]] = {}
+    for n, sheet in enumerate(sheets):
+        for x in sheet.limits:
+            found.setdefault((x.characteristic, x.stage), [None] * len(sheets))[n] = x
+    items = []
+    for (name, stage), limits in found.items():
+        shown = ["none" if x is None else _limit(x) for x in limits]
+        differs = any(x is None or (x.low, x.high, x.new, x.at_limit, x.unit) != _sizes(limits[-1]) for x in limits)
+        label = characteristics[name].label + ("" if stage == "both" else f", {stage.replace('-', ' ')}")
+        item = (f"{'≠ ' if differs else '  '}{label}", *shown)
+        items.append(Item(item, (characteristics[name], limits[-1]), "doubt" if differs else ""))
+    return items
+
+
+def _sizes(x: Any) -> Any:
+    return None if x is None else (x.low, x.high, x.new, x.at_limit, x.unit)
 
 
 def _limit(x: Any) -> str:
