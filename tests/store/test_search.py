@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import threading
-import time
 from pathlib import Path
 
 import pytest
@@ -329,11 +328,8 @@ HOSTILE = [
 
 @pytest.mark.parametrize("asked", HOSTILE, ids=lambda text: ascii(text[:12]))
 def test_hostile_queries(demo: Record, asked: str) -> None:
-    """Whatever is asked is answered, or refused in one clear line, within a fifth of a second."""
-    search.find(demo, "warm up")
-    begun = time.perf_counter()
+    """Whatever is asked is answered, with hits or with one clear line (how fast: tests/benchmarks)."""
     answer = search.find(demo, asked, typing=True)
-    assert time.perf_counter() - begun < 0.2
     assert answer.hits or answer.said or answer.asked.strip()
 
 

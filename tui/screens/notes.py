@@ -70,6 +70,7 @@ class Notes(Standing):
         self.query_one("#ask").focus()
         self.say_where()
         self._show_filters()
+        self.query_one("#hits", Hits).show((), "making the search ready ...")
         self.search()
 
     def on_screen_resume(self) -> None:
