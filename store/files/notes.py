@@ -17,10 +17,15 @@ from store.tables.notes import FindingRow, NoteRow
 MOST_TEXT = 10_000
 
 
-def _lines(loading: Loading, lines: Iterator[Numbered], long: Sequence[str]) -> Iterator[tuple[int, Any, str, str]]:
-    """Job, line, moment and person of every line that is good so far."""
+def _lines(
+    loading: Loading, lines: Iterator[Numbered], long: Sequence[str], *, dated: bool
+) -> Iterator[tuple[int, Any, str, str]]:
+    """Job, line, moment and person of every line that is good so far.
+
+    A note without a moment was written now; a finding has none in its file, and is as old as the end of its job.
+    """
     conn = loading.change.conn
-    jobs = {r[0]: r[1] for r in conn.exec_driver_sql("SELECT key, id FROM job")}
+    jobs = {r[0]: (r[1], r[2]) for r in conn.exec_driver_sql("SELECT key, id, coalesce(ended, taken_in) FROM job")}
     people = {r[0] for r in conn.exec_driver_sql("SELECT initials FROM person UNION ALL SELECT 'shop' FROM person")}
     for number, line in lines:
         job = jobs.get(comparing_key(line["tag"]))
@@ -36,16 +41,17 @@ def _lines(loading: Loading, lines: Iterator[Numbered], long: Sequence[str]) -> 
             loading.refuse(number, over, f"longer than {MOST_TEXT:,} characters")
             continue
         try:
-            at = times.moment(line["at"]) if line.get("at") else loading.change.at
+            at = times.moment(line["at"]) if line.get("at") else loading.change.at if dated else job[1]
         except Refused as fault:
             loading.refuse(number, "at", fault)
             continue
-        yield job, line, at, by or loading.change.by
+        yield job[0], line, at, by or loading.change.by
 
 
 def _take_notes(loading: Loading, lines: Iterator[Numbered]) -> int:
     return loading.change.load(
-        NoteRow, ((None, job, at, by, line["text"]) for job, line, at, by in _lines(loading, lines, ["text"]))
+        NoteRow,
+        ((None, job, at, by, line["text"]) for job, line, at, by in _lines(loading, lines, ["text"], dated=True)),
     )
 
 
@@ -60,7 +66,7 @@ def _take_findings(loading: Loading, lines: Iterator[Numbered]) -> int:
         FindingRow,
         (
             (None, job, *(line.get(c, "") for c in columns), at, by)
-            for job, line, at, by in _lines(loading, lines, columns)
+            for job, line, at, by in _lines(loading, lines, columns, dated=False)
         ),
     )
 

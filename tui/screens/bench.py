@@ -55,7 +55,7 @@ class Bench(Standing):
                 Column("complaint", 0, quiet=True, from_width=100), Column("days", 4, right=True), Column("out", 3, right=True),
                 Column("doubt", 5, right=True),
             ],
-            empty="no job here; F2 takes in a core",
+            empty="no job here; F2 takes in a core, F7 looks in the notes",
             id="jobs",
             led=True,
         )  # fmt: skip
