@@ -8,11 +8,12 @@ from typing import TYPE_CHECKING, Any, ClassVar
 
 from textual.app import App
 from textual.binding import Binding, BindingType
+from textual.filter import LineFilter
 from textual.message import Message
 from textual.screen import ModalScreen
 
 from tui.screens.places import PLACES, load
-from tui.theme import THEMES
+from tui.theme import THEMES, Uncoloured
 from tui.writer import Order, Writer
 
 if TYPE_CHECKING:
@@ -62,6 +63,11 @@ class Wearline(App[None]):
         for theme in THEMES.values():
             self.register_theme(theme)
         self.theme = "graphite"
+        self.uncoloured = [Uncoloured()] if self.no_color else []
+
+    def get_line_filters(self) -> Sequence[LineFilter]:
+        """With NO_COLOR nothing has a colour."""
+        return self.uncoloured or super().get_line_filters()
 
     def on_mount(self) -> None:
         """Paint the bench first; only then is the store imported and the record opened."""

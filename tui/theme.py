@@ -5,6 +5,10 @@ Every colour of text has at least 4.5 : 1 against the grounds that it stands on 
 
 from __future__ import annotations
 
+from rich.segment import Segment
+from rich.style import Style
+from textual.color import Color
+from textual.filter import LineFilter
 from textual.theme import Theme
 
 GRAPHITE = Theme(
@@ -58,6 +62,35 @@ PAPER = Theme(
     },
 )
 THEMES = {"graphite": GRAPHITE, "paper": PAPER}
+
+
+class Uncoloured(LineFilter):
+    """No colour at all, as NO_COLOR asks: what stands on brass is reversed, what is quiet is faint, the rest as it is."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        themes = THEMES.values()
+        self.brass = {Color.parse(theme.variables["brass"]).rich_color.triplet for theme in themes}
+        self.faint = {
+            Color.parse(theme.variables[tone]).rich_color.triplet for theme in themes for tone in ("quiet", "hairline")
+        }
+        self.known: dict[Style, Style] = {}
+
+    def apply(self, segments: list[Segment], background: Color) -> list[Segment]:
+        """The same text in no colour."""
+        return [Segment(text, style and self._plain(style), control) for text, style, control in segments]
+
+    def _plain(self, style: Style) -> Style:
+        plain = self.known.get(style)
+        if plain is None:
+            is_here = style.bgcolor is not None and style.bgcolor.triplet in self.brass
+            is_faint = style.color is not None and style.color.triplet in self.faint and not style.bold
+            plain = Style(
+                bold=style.bold, italic=style.italic, underline=style.underline, reverse=is_here or style.reverse,
+                dim=is_faint and not is_here, meta=style.meta,
+            )  # fmt: skip
+            self.known[style] = plain
+        return plain
 
 
 def contrast(one: str, other: str) -> float:

@@ -32,7 +32,7 @@ def feed(keying: Keying, text: str) -> list[Submitted]:
 @given(st.lists(st.from_regex(r"[1-9][0-9]{0,3}(\.[0-9]{1,3})?", fullmatch=True), min_size=1, max_size=120), st.data())
 def test_a_burst_fills_cells_in_order(values: list[str], data: st.DataObject) -> None:
     """Any values, any terminators, slips rubbed out on the way: each value in the next cell, unaltered."""
-    widths = []
+    widths: list[int] = []
     while sum(widths) < len(values):
         widths.append(data.draw(st.integers(1, 9)))
     keying = sheet(*widths)

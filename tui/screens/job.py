@@ -26,8 +26,9 @@ class JobScreen(Standing):
         "goes to the next empty one. A gauge that types does the same. Write 11.4, 11,4, .448in, 7/16 or 1 3/16; tests are one "
         "key: p pass, f fail (add what failed), c cannot be judged. Typing over a reading corrects it and asks why; nothing is "
         "erased. The lines below the sheet explain the row under the cursor.\n\n"
-        "Marks in a cell:  · being written   ! refused, the reason is below   ? may be a slip, look again   ◂ governs\n"
-        "The wear rule:  ├ new   ┃ limit   ░ the gauge cannot tell   ╌ beyond   │ reading   ◆ judged   · other stage"
+        "Marks in a cell: · being written  ! refused  ? may be a slip  ◂ governs\n"
+        "Wear rule: ├ new  ┃ limit  ░ the gauge cannot tell  ╌ beyond the limit\n"
+        "           │ reading  ◆ judged  · reading at the other stage"
     )
     CAUTIONS = (
         "Growler: never on with no armature in the jaws; off before lifting it. Keep pacemaker wearers away.",

@@ -72,17 +72,17 @@ class TakeIn(Standing):
         model, serial = (self.query_one(f"#{name}", Input).value for name in ("model", "serial"))
 
         def question() -> Any:
-            from store import jobs, models
+            from store import jobs, parts
             from store.errors import NotFound
 
             assert self.record is not None
             if not model.strip():
                 return None
             try:
-                found = models.find(self.record, model)
+                meant = parts.model_meant(self.record, model)
             except NotFound as fault:
                 return str(fault)
-            return found, jobs.of_unit(self.record, found.number, serial) if serial.strip() else ()
+            return meant, jobs.of_unit(self.record, meant.model.number, serial) if serial.strip() else ()
 
         self.ask("known", question, self._show)
 
@@ -93,7 +93,10 @@ class TakeIn(Standing):
         if isinstance(answer, str):
             text.append(answer, style="italic")
         elif answer is not None:
-            model, earlier = answer
+            meant, earlier = answer
+            model = meant.model
+            for step in meant.says:
+                text.append(f"{step}\n", style="italic")
             text.append(f"{model.number}  {model.kind}  {model.volts} V  {model.rotation}  {model.note}\n")
             for job in earlier:
                 text.append(f"{job.tag}  {times.local(job.taken_in)[:10]}  {job.outcome}", style="bold")
