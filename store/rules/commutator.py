@@ -1,0 +1,263 @@
+"""What the lathe may take off a commutator, known before it turns.
+
+Terms: D smallest measured diameter, r TIR taken from the journals, u smallest undercut, g deepest defect below the
+surface (0 where there is none), p polish allowance on the diameter. All in one unit, exact.
+
+    clean-up diameter   D' = D - r - 2 g - p       never larger than the true one, exact for pure eccentricity (p = 0)
+    worst slot after    u - [(D - D') / 2 + r]     a bound for any shape
+                        u - [(D - D') / 2 + r / 2] for a round commutator off its centre
+
+Source: geometry; the tests turn sampled profiles about their axis. The polish allowance is common practice, and the shop's.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from enum import StrEnum
+from fractions import Fraction
+from math import cos, pi
+
+from store.errors import Refused
+from store.rules.quantities import plain
+
+
+class Action(StrEnum):
+    """What is to be done with the commutator."""
+
+    leave = "leave"
+    polish = "polish"
+    turn = "turn"
+    turn_last_cut = "turn-last-cut"
+    replace = "replace"
+    straighten_shaft_first = "straighten-shaft-first"
+    not_to_be_turned = "not-to-be-turned"
+    re_undercut = "re-undercut"
+
+
+ORDER = "turn, re-undercut, deburr, polish, measure again"
+
+
+@dataclass(frozen=True, slots=True)
+class Found:
+    """A commutator as measured and as limited, all sizes in `unit`; None where it is not measured or not limited."""
+
+    unit: str
+    diameter: Fraction | None = None
+    runout: Fraction | None = None
+    undercut: Fraction | None = None
+    defect: Fraction = Fraction(0)
+    polish: Fraction = Fraction(0)
+    lowest: Fraction | None = None
+    lowest_passes: bool = True
+    most_runout: Fraction | None = None
+    least_undercut: Fraction | None = None
+    shaft_runout: Fraction | None = None
+    most_shaft_runout: Fraction | None = None
+    surface_failed: bool = False
+    may_turn: bool = True
+    may_undercut: bool = True
+
+
+@dataclass(frozen=True, slots=True)
+class Advice:
+    """One line: what to do and why, the formula with its numbers, and predicted sizes by characteristic. Never a reading."""
+
+    action: Action
+    because: str
+    formula: str = ""
+    predicted: tuple[tuple[str, Fraction], ...] = ()
+
+
+def clean_up(
+    diameter: Fraction, runout: Fraction, defect: Fraction = Fraction(0), polish: Fraction = Fraction(0)
+) -> Fraction:
+    """The diameter at which the whole surface is clean. Raises Refused for a TIR as large as the diameter, or below zero."""
+    for what, size in (("runout", runout), ("defect", defect), ("polish allowance", polish)):
+        if size < 0:
+            raise Refused(f"a {what} is not below zero")
+    if diameter <= 0:
+        raise Refused("a diameter is above zero")
+    if runout >= diameter:
+        raise Refused(
+            f"a runout of {plain(runout)} is not smaller than the diameter {plain(diameter)}; is one of them a slip?"
+        )
+    made = diameter - runout - 2 * defect - polish
+    if made <= 0:
+        raise Refused("nothing would be left of the commutator; is a defect or a runout a slip?")
+    return made
+
+
+def worst_slot(undercut: Fraction, diameter: Fraction, turned: Fraction, runout: Fraction) -> Fraction:
+    """The least undercut after turning to `turned`, a bound for any shape; below zero: the mica stands proud."""
+    return undercut - ((diameter - turned) / 2 + runout)
+
+
+def worst_slot_eccentric(undercut: Fraction, diameter: Fraction, turned: Fraction, runout: Fraction) -> Fraction:
+    """The least undercut after turning a round commutator that was off its centre."""
+    return undercut - ((diameter - turned) / 2 + runout / 2)
+
+
+def read_share(readings: int) -> float:
+    """The share of a once-a-turn runout that so many equally spaced dial readings see at least: cos(pi/N) for even N.
+
+    For odd N the least spread of N points of a full turn is seen: cos(pi/(2 N)). Raises Refused under two readings.
+    """
+    if readings < 2:
+        raise Refused("one dial reading shows no runout")
+    return cos(pi / readings) if readings % 2 == 0 else cos(pi / (2 * readings))
+
+
+def cuts_left(diameter: Fraction, lowest: Fraction, cut: Fraction) -> int:
+    """How many further cuts of this size remain above the limit. Raises Refused for a cut that takes nothing."""
+    if cut <= 0:
+        raise Refused("a cut takes something off")
+    return max(0, int((diameter - lowest) / cut))
+
+
+def advise(found: Found) -> tuple[Advice, ...]:
+    """What to do, in the order of the work; at least one line once a diameter is measured, none before.
+
+    Raises Refused for sizes that cannot be (see `clean_up`).
+    """
+    if found.diameter is None:
+        return ()
+    if found.runout is not None:
+        clean_up(found.diameter, found.runout)
+    if _bent(found):
+        shaft = f"{plain(found.shaft_runout or Fraction(0))} over {plain(found.most_shaft_runout or Fraction(0))} {found.unit}"
+        return (
+            Advice(
+                Action.straighten_shaft_first,
+                f"the shaft runs out {shaft}; straighten or replace it, then measure again",
+            ),
+        )
+    if found.lowest is not None and _under(found.diameter, found):
+        said = f"{plain(found.diameter)} {found.unit} is under the limit of {plain(found.lowest)} before any cut"
+        return (Advice(Action.replace, said),)
+    if not _wants_a_cut(found):
+        return _without_a_cut(found)
+    if not found.may_turn:
+        return (
+            Advice(
+                Action.not_to_be_turned,
+                f"{_why_cut(found)}, and this model's commutator must not be turned: replace or rewind",
+            ),
+        )
+    return _with_a_cut(found)
+
+
+def _bent(found: Found) -> bool:
+    return (
+        found.shaft_runout is not None
+        and found.most_shaft_runout is not None
+        and found.shaft_runout > found.most_shaft_runout
+    )
+
+
+def _under(diameter: Fraction, found: Found) -> bool:
+    assert found.lowest is not None
+    return diameter < found.lowest or (diameter == found.lowest and not found.lowest_passes)
+
+
+def _wants_a_cut(found: Found) -> bool:
+    """Nothing is turned that is inside its runout limit and has no surface defect."""
+    if found.defect > 0:
+        return True
+    return found.runout is not None and found.most_runout is not None and found.runout > found.most_runout
+
+
+def _why_cut(found: Found) -> str:
+    if found.runout is not None and found.most_runout is not None and found.runout > found.most_runout:
+        return f"it runs out {plain(found.runout)} over {plain(found.most_runout)} {found.unit}"
+    return f"its surface is damaged {plain(found.defect)} {found.unit} deep"
+
+
+def _without_a_cut(found: Found) -> tuple[Advice, ...]:
+    lines = []
+    if found.surface_failed:
+        predicted = (("commutator-diameter", found.diameter - found.polish),) if found.diameter is not None else ()
+        lines.append(
+            Advice(
+                Action.polish,
+                "it runs true; the surface is not clean but has no depth",
+                f"D - p = {_less(found)}",
+                predicted,
+            )
+        )
+    elif found.runout is not None and found.most_runout is not None:
+        lines.append(
+            Advice(
+                Action.leave,
+                f"it runs true, {plain(found.runout)} within {plain(found.most_runout)} {found.unit}, and is sound",
+            )
+        )
+    else:
+        lines.append(
+            Advice(
+                Action.leave,
+                "nothing measured calls for a cut; without a runout and its limit nothing more can be said",
+            )
+        )
+    if found.undercut is not None and found.least_undercut is not None and found.undercut < found.least_undercut:
+        lines.append(_undercut(found, found.undercut, f"the shallowest slot is {plain(found.undercut)}"))
+    return tuple(lines)
+
+
+def _less(found: Found) -> str:
+    assert found.diameter is not None
+    return f"{plain(found.diameter)} - {plain(found.polish)} = {plain(found.diameter - found.polish)} {found.unit}"
+
+
+def _with_a_cut(found: Found) -> tuple[Advice, ...]:
+    assert found.diameter is not None
+    runout = found.runout or Fraction(0)
+    turned = clean_up(found.diameter, runout, found.defect, found.polish)
+    formula = (
+        f"D - r - 2g - p = {plain(found.diameter)} - {plain(runout)} - 2 x {plain(found.defect)} - {plain(found.polish)} = "
+        f"{plain(turned)} {found.unit}"
+    )
+    predicted = [("commutator-diameter", turned)]
+    if found.lowest is not None and _under(turned, found):
+        said = f"{_why_cut(found)}; cleaned up it would be {plain(turned)}, under the limit of {plain(found.lowest)}: do not turn it"
+        return (Advice(Action.replace, said, formula, tuple(predicted)),)
+    action, said = Action.turn, _why_cut(found)
+    if found.lowest is None:
+        said += "; no least diameter is entered, so nothing says whether it may be turned again"
+    elif _under(2 * turned - found.diameter, found):
+        action = Action.turn_last_cut
+        said += f"; another cut of this size would pass the limit of {plain(found.lowest)}"
+    else:
+        left = cuts_left(turned, found.lowest, found.diameter - turned)
+        said += f"; {left} more cut{'s' if left != 1 else ''} of this size would remain"
+    lines = [Advice(action, said, formula, tuple(predicted))]
+    if found.undercut is not None:
+        lines += _after_the_cut(found, turned, runout)
+    lines[0] = replace(lines[0], because=f"{lines[0].because}. Order: {ORDER}")
+    return tuple(lines)
+
+
+def _after_the_cut(found: Found, turned: Fraction, runout: Fraction) -> list[Advice]:
+    assert found.undercut is not None
+    assert found.diameter is not None
+    slot = worst_slot(found.undercut, found.diameter, turned, runout)
+    formula = (
+        f"u - [(D - D')/2 + r] = {plain(found.undercut)} - [({plain(found.diameter)} - {plain(turned)})/2 + {plain(runout)}] = "
+        f"{plain(slot)} {found.unit}, the bound for any shape"
+    )
+    least = found.least_undercut if found.least_undercut is not None else Fraction(0)
+    if slot >= least and slot > 0:
+        return []
+    said = f"after the cut the worst slot would be {plain(max(slot, Fraction(0)))}"
+    return [
+        replace(_undercut(found, slot, said), formula=formula, predicted=(("undercut-depth", max(slot, Fraction(0))),))
+    ]
+
+
+def _undercut(found: Found, slot: Fraction, said: str) -> Advice:
+    least = "" if found.least_undercut is None else f", under {plain(found.least_undercut)} {found.unit}"
+    if not found.may_undercut:
+        return Advice(
+            Action.not_to_be_turned,
+            f"{said}{least}, and this model's commutator must not be undercut: replace or rewind",
+        )
+    return Advice(Action.re_undercut, f"{said}{least}")
