@@ -135,11 +135,13 @@ def take_in(
 ) -> Job:  # fmt: skip
     """Take in a core. A unit that was released before makes the job a comeback of its last release, at once.
 
-    The tag is the next number unless one is given; the newest limit revision of the model is pinned.
+    Any number that leads to a model will do. The tag is the next number unless one is given; the newest limit revision of the model is pinned.
     Raises Refused (tag taken, no serial, text too long, not a number of hours), NotFound (model, person).
     """
+    from store import parts
+
     people.require_known(record)
-    found = models.find(record, model)
+    found = parts.model_meant(record, model).model
     with record.change("core taken in") as change:
         change.subject = made_tag = _tag(change, tag)
         insert(

@@ -11,5 +11,6 @@ fitting     a part fitted on a job
 from __future__ import annotations
 
 from store.parts.checking import models_for
+from store.parts.meant import Meant, model_meant
 
-__all__ = ["models_for"]
+__all__ = ["Meant", "model_meant", "models_for"]

@@ -313,3 +313,15 @@ def test_a_model_takes_part_in_relations(lists: Record) -> None:
     numbers.relate(lists, "KS-120", "superseded-by", "KS-100", source="maker's bulletin", dated="2025-01-01")
     assert parts.models_for(lists, "KS-120") == ("KS-120", "KS-100")
     assert parts.models_for(lists, "KS-100") == ("KS-100",)
+
+
+def test_a_core_is_taken_in_by_any_number_that_leads_to_its_model(lists: Record) -> None:
+    """A customer's number; of two models that it leads to the nearer; what leads nowhere is refused with what is near."""
+    numbers.relate(lists, "KS-100", "superseded-by", "KS-120", source="maker's bulletin", dated="2025-01-01")
+    assert jobs.take_in(lists, model="old 7", serial="9").model == "KS-100"
+    assert parts.model_meant(lists, "old 7").says == ("OLD-7 same as KS-100 (customer's list, 2022-05-01)",)
+    assert parts.model_meant(lists, "ks120").says == ()
+    with pytest.raises(NotFound, match="no model 'KS-10'; did you mean KS-100"):
+        jobs.take_in(lists, model="KS-10", serial="9")
+    with pytest.raises(NotFound, match="no model 'BR-100'"):
+        jobs.take_in(lists, model="BR-100", serial="9")
