@@ -2,6 +2,6 @@
 
 from __future__ import annotations
 
-from store.tables import audit, gauges, jobs, limits, models, notes, parts, people, readings, releases, search
+from store.tables import audit, gauges, jobs, limits, models, notes, parts, people, readings, releases, rework, search
 
-__all__ = ["audit", "gauges", "jobs", "limits", "models", "notes", "parts", "people", "readings", "releases", "search"]
+__all__ = ["audit", "gauges", "jobs", "limits", "models", "notes", "parts", "people", "readings", "releases", "rework", "search"]
