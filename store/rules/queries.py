@@ -68,17 +68,10 @@ def parse(text: str, *, typing: bool = False) -> Query:
     for part in _PART.finditer(cut):
         name = (part["name"] or "").lower()
         if name in FILTERS:
-            value = part["quoted"] if part["quoted"] is not None else part["value"]
-            if filters.setdefault(name, value) != value:
-                raise Refused(f"{name}: is given twice")
+            _filter(filters, name, part["quoted"] if part["quoted"] is not None else part["value"])
             continue
-        said = (
-            part["phrase"]
-            if part["phrase"] is not None
-            else part.group().lstrip("-")
-            if part["minus"]
-            else part.group()
-        )
+        phrase = part["phrase"]
+        said = part.group().lstrip("-") if phrase is None and part["minus"] else phrase or part.group()
         pieces, whole = _words(said)
         if not pieces:
             continue
@@ -87,9 +80,9 @@ def parse(text: str, *, typing: bool = False) -> Query:
                 excluded.append(whole or pieces[0])
             else:
                 made["excluded_phrases"].append(pieces)
-        elif part["phrase"] is not None and len(pieces) > 1:
+        elif phrase is not None and len(pieces) > 1:
             made["phrases"].append(pieces)
-        elif part["phrase"] is not None:
+        elif phrase is not None:
             terms.append(Term(pieces[0], literal=True))
         else:
             last = typing and part.end() == len(cut) and len(text) == len(cut)
@@ -102,6 +95,11 @@ def parse(text: str, *, typing: bool = False) -> Query:
         _joined(kept[:MOST_WORDS]), tuple(made["phrases"][:MOST_WORDS]), tuple(excluded[:MOST_WORDS]),
         tuple(made["excluded_phrases"][:MOST_WORDS]), filters, left_out,
     )  # fmt: skip
+
+
+def _filter(filters: dict[str, str], name: str, value: str) -> None:
+    if filters.setdefault(name, value) != value:
+        raise Refused(f"{name}: is given twice")
 
 
 def _words(said: str) -> tuple[tuple[str, ...], str]:

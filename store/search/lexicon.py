@@ -15,6 +15,7 @@ from store.rules.spelling import SIGNATURE_BITS_A_SLIP, Neighbour, signature
 from store.rules.words import LONGEST
 
 MOST_KEPT = 256
+FEW = 1000
 
 
 class Lexicon:
@@ -106,27 +107,48 @@ class Lexicon:
 
     def _sort(self) -> None:
         """Bring the orders by length and by letters up to date with words that have come since."""
-        if self._sorted == len(self.words):
+        new = list(range(self._sorted, len(self.words)))
+        if not new:
             return
-        new = range(self._sorted, len(self.words))
-        lengths = np.fromiter(map(len, self.words), np.int32, len(self.words))
-        signatures = np.empty(len(self.words), np.uint64)
-        signatures[self._by_length] = self._signatures
-        signatures[self._sorted :] = np.fromiter((signature(self.words[n]) for n in new), np.uint64, len(new))
-        self._by_length = np.argsort(lengths, kind="stable").astype(np.int32)
-        self._signatures = signatures[self._by_length]
-        self._first_of_length = np.searchsorted(lengths[self._by_length], np.arange(LONGEST + 2)).tolist()
-        self._by_letters = self._merged_by_letters(list(new))
+        lengths = np.fromiter((len(self.words[n]) for n in new), np.int64, len(new))
+        signatures = np.fromiter((signature(self.words[n]) for n in new), np.uint64, len(new))
+        if len(new) > FEW:
+            lengths = np.concatenate([self._lengths(), lengths])
+            every = np.concatenate([self._by_number(), signatures])
+            self._by_length = np.argsort(lengths, kind="stable").astype(np.int32)
+            self._signatures = every[self._by_length]
+            self._first_of_length = np.searchsorted(lengths[self._by_length], np.arange(LONGEST + 2)).tolist()
+            self._by_letters = np.array(sorted(range(len(self.words)), key=self.words.__getitem__), np.int32)
+        else:
+            self._put_in(new, lengths, signatures)
         self._sorted = len(self.words)
 
-    def _merged_by_letters(self, new: list[int]) -> NDArray[np.int32]:
+    def _put_in(self, new: list[int], lengths: NDArray[np.int64], signatures: NDArray[np.uint64]) -> None:
+        """Put a few words into their places: sorting anew would cost more than the search at half a million words."""
+        firsts = np.array(self._first_of_length)
+        order = np.argsort(lengths, kind="stable")  # of words put in at one place the shorter first
+        ends = firsts[lengths[order] + 1]
+        self._by_length = np.insert(self._by_length, ends, np.array(new)[order])
+        self._signatures = np.insert(self._signatures, ends, signatures[order])
+        shorter = np.cumsum(np.bincount(lengths, minlength=LONGEST + 1))
+        firsts[1:] += shorter[: LONGEST + 1]
+        self._first_of_length = firsts.tolist()
         words = self.words
         new.sort(key=words.__getitem__)
-        if len(new) > 1000:
-            every = np.concatenate([self._by_letters, np.array(new, np.int32)])
-            return np.array(sorted(every.tolist(), key=words.__getitem__), np.int32)
         places = [bisect_left(self._by_letters, words[n], key=lambda m: words[m]) for n in new]
-        return np.insert(self._by_letters, places, new).astype(np.int32)
+        self._by_letters = np.insert(self._by_letters, places, new)
+
+    def _lengths(self) -> NDArray[np.int64]:
+        """The lengths of the words sorted so far, by number."""
+        made = np.empty(self._sorted, np.int64)
+        made[self._by_length] = np.repeat(np.arange(LONGEST + 1), np.diff(self._first_of_length))
+        return made
+
+    def _by_number(self) -> NDArray[np.uint64]:
+        """The signatures of the words sorted so far, by number."""
+        made = np.empty(self._sorted, np.uint64)
+        made[self._by_length] = self._signatures
+        return made
 
     def orders(self) -> tuple[NDArray[np.uint64], NDArray[np.int32], NDArray[np.int32]]:
         """Signatures by length, word numbers by length and by letters: what a snapshot keeps."""
