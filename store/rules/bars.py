@@ -1,124 +1,88 @@
-"""The bar-to-bar test: every bar against the median, the pattern named, and a strip chart round the commutator.
+"""Bar-to-bar readings round a commutator: deviations from the median, and the pattern that they make.
 
-The median is taken because one dead coil drags a mean. A limit in per cent is the shop's own; none is shipped.
+The median, not the mean: one dead coil drags a mean. The limit in per cent is the shop's own.
 """
 
 from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from enum import StrEnum
 from fractions import Fraction
-from math import floor
 
 from store.errors import Refused
 from store.rules.limits import median
 
 
-class Pattern(StrEnum):
-    """What the readings round the commutator look like."""
-
-    even = "even"
-    short = "short suspected"
-    open_ = "open suspected"
-    riser = "riser joint suspected"
-    period = "equalised winding"
-    uneven = "uneven"
-
-
 @dataclass(frozen=True, slots=True)
-class Bars:
-    """The readings round the commutator, bar 1 first. `deviations` in per cent of the median; `beyond` are bar numbers."""
+class Chart:
+    """Deviations in per cent of the median, a bar each from bar 1; `far` the bars beyond the limit, `pattern` in words."""
 
-    median: Fraction
+    middle: Fraction
     deviations: tuple[Fraction, ...]
-    beyond: tuple[int, ...]
-    pattern: Pattern
-    says: str
-    period: int | None = None
-
-    def strip(self, rows: int = 5) -> tuple[tuple[int, ...], Fraction]:
-        """The strip chart: for each bar its row from `rows` at the top to -rows at the bottom, and the per cent of a row.
-
-        The scale is taken from the greatest deviation; all at nought where there is none.
-        """
-        most = max((abs(d) for d in self.deviations), default=Fraction(0))
-        if most == 0:
-            return tuple(0 for _ in self.deviations), Fraction(0)
-        return tuple(_nearest(d * rows / most) for d in self.deviations), most / rows
+    far: tuple[int, ...]
+    pattern: str
 
 
-def analyse(
-    readings: Sequence[Fraction], *, limit_per_cent: Fraction | None, bars: int | None = None, poles: int | None = None
-) -> Bars:
-    """Look at one reading a bar pair, in order round the commutator. Raises Refused: none, too many, all zero, below zero.
+def chart(values: Sequence[Fraction], limit: Fraction, bars: int | None = None, poles: int | None = None) -> Chart:
+    """The chart of readings in the order of the bars. `limit` in per cent of the median, above zero.
 
-    `limit_per_cent` None: nothing is beyond, and the pattern is `even`.
+    Raises Refused: more readings than the model has bars, fewer than three, a median of zero, a negative reading.
     """
-    if not readings:
-        raise Refused("no bar is read")
-    if bars is not None and len(readings) > bars:
-        raise Refused(f"{len(readings)} bars are read; this model's commutator has {bars}")
-    if any(r < 0 for r in readings):
-        raise Refused("a bar-to-bar reading is not below zero; turn the leads")
-    middle = median(readings)
+    if bars is not None and len(values) > bars:
+        raise Refused(f"{len(values)} readings, and this model's commutator has {bars} bars")
+    if len(values) < 3:
+        raise Refused("three bars at least make a pattern")
+    if any(value < 0 for value in values):
+        raise Refused("a drop or a resistance is not below zero")
+    if limit <= 0:
+        raise Refused("the limit in per cent is above zero")
+    middle = median(values)
     if middle == 0:
-        raise Refused("half the bars read zero: no current flows, or the leads are off")
-    deviations = tuple((r - middle) * 100 / middle for r in readings)
-    if limit_per_cent is None:
-        return Bars(middle, deviations, (), Pattern.even, "no limit in per cent is entered; nothing is judged")
-    beyond = tuple(n for n, d in enumerate(deviations, 1) if abs(d) > limit_per_cent)
-    if not beyond:
-        return Bars(
-            middle,
-            deviations,
-            (),
-            Pattern.even,
-            f"all {len(readings)} within {float(limit_per_cent):g} % of the median",
-        )
-    is_whole = bars is None or len(readings) == bars
-    step = _period(readings, poles, limit_per_cent) if is_whole else None
-    if step is not None:
-        says = f"repeats every {step} bars (bars over pole pairs): an equalised winding; compare like with like"
-        return Bars(middle, deviations, beyond, Pattern.period, says, step)
-    pattern, says = _named(deviations, beyond, limit_per_cent)
-    return Bars(middle, deviations, beyond, pattern, f"{says} ({_listed(beyond)})")
+        raise Refused("the middle reading is zero; is the supply on and the meter in its range?")
+    deviations = tuple((value - middle) / middle * 100 for value in values)
+    far = tuple(n for n, deviation in enumerate(deviations, start=1) if abs(deviation) > limit)
+    return Chart(middle, deviations, far, _pattern(deviations, far, limit, bars, poles))
 
 
-def _named(deviations: Sequence[Fraction], beyond: Sequence[int], limit: Fraction) -> tuple[Pattern, str]:
-    """Low: a short. High with its neighbours low: an open coil of a lap winding. Pairs a little high: a riser joint."""
-    n = len(deviations)
-    low = [b for b in beyond if deviations[b - 1] < 0]
-    high = [b for b in beyond if deviations[b - 1] > 0]
-    for b in high:
-        neighbours = (deviations[(b - 2) % n], deviations[b % n])
-        if n > 2 and all(d < 0 for d in neighbours) and min(neighbours) < -limit / 4:
-            return Pattern.open_, "one high, its neighbours low: an open coil suspected there (lap winding)"
-    if low and not high:
-        where = "one bar is low" if len(low) == 1 else f"{len(low)} bars are low"
-        return Pattern.short, f"{where}: a short suspected there"
-    pairs = {b for b in high if b % n + 1 in high or (b - 2) % n + 1 in high}
-    if high and not low and pairs == set(high):
-        return Pattern.riser, "neighbouring bars high in pairs: the riser joint between them suspected"
-    return Pattern.uneven, "no single pattern"
+def _pattern(
+    deviations: Sequence[Fraction], far: Sequence[int], limit: Fraction, bars: int | None, poles: int | None
+) -> str:
+    if not far:
+        return "even all round"
+    count = len(deviations)
+    period = _period(deviations, bars, poles, limit)
+    if period:
+        return f"repeats every {period} bars: equalised winding, compare like with like"
+    low = [n for n in far if deviations[n - 1] < 0]
+    high = [n for n in far if deviations[n - 1] > 0]
+    if len(low) == 1 and not high:
+        return f"one low at {low[0]}: a short is suspected there"
+    if len(high) == 1:
+        n = high[0]
+        beside = [deviations[(n - 2) % count], deviations[n % count]]
+        if all(d < 0 for d in beside):
+            return f"one high at {n} with its neighbours low: an open coil (lap winding)"
+    if len(high) == 2 and not low and (high[1] - high[0] == 1 or {high[0], high[1]} == {1, count}):
+        return f"a pair high at {high[0]} and {high[1]}: a riser joint"
+    parts = []
+    if low:
+        parts.append(f"low at {_listed(low)}")
+    if high:
+        parts.append(f"high at {_listed(high)}")
+    return f"{' and '.join(parts)}: no pattern that is known"
 
 
-def _period(readings: Sequence[Fraction], poles: int | None, limit: Fraction) -> int | None:
-    """Bars over pole pairs, where every bar is within the limit of the mean of its like and the likes differ by more."""
-    if not poles or poles < 4 or len(readings) % (poles // 2):
+def _period(deviations: Sequence[Fraction], bars: int | None, poles: int | None, limit: Fraction) -> int | None:
+    """Bars over pole pairs, where the readings repeat so within a fifth of the limit and are not even."""
+    if not bars or not poles or poles < 4 or len(deviations) != bars or bars % (poles // 2):
         return None
-    step = len(readings) // (poles // 2)
-    if step < 2:
+    step = bars // (poles // 2)
+    if step < 2 or all(abs(d) <= limit for d in deviations):
         return None
-    likes = [readings[k::step] for k in range(step)]
-    middles = [median(like) for like in likes]
-    close = all(abs(r - m) * 100 <= limit * m for like, m in zip(likes, middles, strict=True) for r in like)
-    return step if close and (max(middles) - min(middles)) * 100 > limit * min(middles) else None
+    repeats = all(abs(deviations[n] - deviations[(n + step) % bars]) <= limit / 5 for n in range(bars))
+    return step if repeats else None
 
 
-def _listed(bars: Sequence[int]) -> str:
-    return f"bar{'s' if len(bars) > 1 else ''} " + ", ".join(map(str, bars))
-
-
-def _nearest(value: Fraction) -> int:
-    return floor(value + Fraction(1, 2)) if value >= 0 else -floor(-value + Fraction(1, 2))
+def _listed(numbers: Sequence[int]) -> str:
+    shown = ", ".join(map(str, numbers[:8]))
+    return shown + (f" and {len(numbers) - 8} more" if len(numbers) > 8 else "")

@@ -1,4 +1,4 @@
-"""Brushes and their springs: keep or replace, pressure on the commutator, force at a stated position, life left."""
+"""Brushes: keep or replace, pressure, and how long they last at the rate at which they wore."""
 
 from __future__ import annotations
 
@@ -6,71 +6,49 @@ from dataclasses import dataclass
 from fractions import Fraction
 
 from store.errors import Refused
-from store.rules import quantities
-from store.rules.plan_lines import number, sized
+from store.rules.quantities import plain
 
 
 @dataclass(frozen=True, slots=True)
-class Worn:
-    """A brush length on a day: `used` is the hours run or the starts made by then."""
+class Point:
+    """A brush length at so many hours (or starts) of work, counted from any beginning."""
 
     length: Fraction
-    used: Fraction
+    worked: Fraction
 
 
-@dataclass(frozen=True, slots=True)
-class Life:
-    """What is left of a brush: a prediction. `rate` is length per hour or start; `left` in hours or starts."""
+def rate(earlier: Point, later: Point) -> Fraction:
+    """Length lost per hour (or start). Raises Refused on no work between, negative work, or no wear: then nothing can be said."""
+    if earlier.worked < 0 or later.worked < 0:
+        raise Refused("hours and starts are not below zero")
+    if later.worked <= earlier.worked:
+        raise Refused("the later reading has no more hours or starts than the earlier one")
+    if later.length >= earlier.length:
+        raise Refused("between the two readings nothing wore; there is no rate to reckon with")
+    return (earlier.length - later.length) / (later.worked - earlier.worked)
 
-    rate: Fraction
-    left: Fraction
-    formula: str
+
+def life_left(earlier: Point, later: Point, limit: Fraction) -> Fraction:
+    """Hours (or starts) until the limit at the rate between two readings; 0 where it is reached. Raises like `rate`."""
+    return max(Fraction(0), (later.length - limit) / rate(earlier, later))
 
 
-def pressure(force: Fraction, force_unit: str, area: Fraction, area_unit: str, to: str = "kPa") -> Fraction:
-    """Force over section. Raises Refused for a section of nothing or a force below zero."""
-    if area <= 0:
-        raise Refused("a brush has a section above zero")
-    if force < 0:
+def pressure_kpa(force_n: Fraction, area_mm2: Fraction) -> Fraction:
+    """Force over section: N / mm2 in kPa. Raises Refused for a section that is not above zero or a force below it."""
+    if area_mm2 <= 0:
+        raise Refused("a brush section is above zero")
+    if force_n < 0:
         raise Refused("a spring force is not below zero")
-    newton = quantities.convert(force, force_unit, "N")
-    square = quantities.convert(area, area_unit, "mm2")
-    return quantities.convert(newton / square * 1000, "kPa", to)
+    return force_n / area_mm2 * 1000
 
 
-def force_at(force: Fraction, read_at: Fraction, stated_at: Fraction, lost_per_length: Fraction) -> Fraction:
-    """The spring's force at the stated position, from one read elsewhere; both positions are brush lengths.
-
-    A positive-gradient spring loses `lost_per_length` of force for each unit of length that the brush is shorter
-    (20 gf a millimetre in TM 10-3930-653-14&P). Raises Refused where the spring would push no more.
-    """
-    if lost_per_length < 0:
-        raise Refused("what a spring loses with wear is not below zero")
-    made = force - (read_at - stated_at) * lost_per_length
-    if made < 0:
-        raise Refused("at that position the spring would not touch the brush")
-    return made
-
-
-def life_left(first: Worn | None, second: Worn | None, limit: Fraction, unit: str = "mm", of: str = "h") -> Life:
-    """How long until the brush reaches its limit, at the rate between two readings.
-
-    Raises Refused on one point, no wear, no use between them, negative hours, or a brush that grew.
-    """
-    if first is None or second is None:
-        raise Refused("brush life needs two dated readings with hours or starts; one point has no rate")
-    if first.used < 0 or second.used < 0:
-        raise Refused("hours and starts are not negative")
-    if second.used <= first.used:
-        raise Refused("between the two readings the unit did not run, so there is no rate")
-    if second.length > first.length:
-        raise Refused("the brush is longer than before: another brush, or a slip")
-    if second.length == first.length:
-        raise Refused("the brush shows no wear between the two readings, so there is no rate")
-    rate = (first.length - second.length) / (second.used - first.used)
-    left = max(Fraction(0), (second.length - limit) / rate)
-    formula = (
-        f"({number(second.length)} - {number(limit)}) / [({number(first.length)} - {number(second.length)}) / "
-        f"({number(second.used)} - {number(first.used)})] = {sized(left, of)}"
-    )
-    return Life(rate, left, f"{formula}, lengths in {unit}")
+def advise(shortest: Fraction, limit: Fraction, passes: bool, unit: str) -> tuple[str, str]:
+    """`replace` or `keep`, and why; `passes` says whether a brush at the limit may stay. All brushes of a set go together."""
+    short = shortest < limit or (shortest == limit and not passes)
+    gap = plain(abs(shortest - limit))
+    if short:
+        return (
+            "replace",
+            f"the shortest is {plain(shortest)} {unit}, {gap} under {plain(limit)}; replace the whole set and seat it",
+        )
+    return "keep", f"the shortest is {plain(shortest)} {unit}, {gap} over {plain(limit)}"
