@@ -49,8 +49,9 @@ class Judged:
     @property
     def because(self) -> str:
         """The sentence that explains the verdict."""
-        exact = self.limit.limit if self.limit else None
-        return because(self.judgement, exact, self.characteristic.noun or self.characteristic.label)
+        exact, one, said = self.limit.limit if self.limit else None, self.characteristic, self.judgement
+        is_one_of_several = said.expected > 1 or said.count > 1 or said.worst_at not in {"", "1"}
+        return because(said, exact, one.noun if one.noun and is_one_of_several else one.label)
 
 
 _CURRENT = """

@@ -9,9 +9,11 @@ from typing import Any, ClassVar
 from textual import on
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
-from textual.containers import Horizontal, VerticalScroll
+from textual.containers import VerticalScroll
 from textual.screen import ModalScreen
 from textual.widgets import Input, Static
+
+from tui.widgets.labelled import Labelled
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,9 +50,7 @@ class Form(ModalScreen[Any]):
             if self.says:
                 yield Static(self.says, markup=False, classes="says")
             for line in self.lines:
-                with Horizontal():
-                    yield Static(line.label, markup=False, classes="label")
-                    yield Input(line.value, id=line.name, placeholder=line.hint)
+                yield Labelled(line.name, line.label, line.hint, line.value)
             yield Static("Enter next   ctrl+s keep   Esc back", markup=False, classes="keys")
             yield Static("", id="wrong", markup=False)
 

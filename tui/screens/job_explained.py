@@ -58,7 +58,7 @@ def explanation(known: Known, keying: Keying, room: Size, tones: Mapping[str, st
     said.append(_head(known, keying, cell, row, f"{row.characteristic.label}{place}"))
     question = known.questions.get((known.sheet.stage, row.characteristic.name, cell.position))
     if question:
-        said.append(Said(1, f"?  {question}  ^y it is right, or type over it", "doubt"))
+        said.append(Said(1, f"?  {question}  ^y it is right; or type over it", "doubt"))
     return laid_out([*said, *_about(known, row, room.width)], room, tones)
 
 
@@ -71,11 +71,11 @@ def _head(known: Known, keying: Keying, cell: Cell, row: Any, name: str) -> Said
         return Said(0, f"!  {name}: {cell.why}", "asking")
     if len(keying.buffer) > 6:
         return Said(0, f"{name}: {keying.buffer[-200:]}▏", "bold")
-    gauge = known.gauges.get(one.gauge) or one.gauge
-    hint = "   p pass  f fail  c cannot judge" if keying.rows[keying.at[0] if keying.at else 0].is_test else ""
+    gauge = known.gauges.get(one.gauge)
+    is_test = keying.at is not None and keying.rows[keying.at[0]].is_test
+    hint = "   p pass  f fail  c cannot judge" if is_test else f"   with {gauge}" if gauge else ""
     asked = sum(which[0] == known.sheet.stage for which in known.questions)
-    more = f"   {asked} to look at again (?)" if asked else ""
-    return Said(0, f"{name}{f'   {gauge}' if gauge and not hint else ''}{hint}{more}", "bold")
+    return Said(0, f"{name}{hint}{f'   ? {asked} to look at again, ^y' if asked else ''}", "bold")
 
 
 def _about(known: Known, row: Any, width: int) -> list[Said]:
@@ -101,7 +101,8 @@ def _about(known: Known, row: Any, width: int) -> list[Said]:
         said.append(Said(5, "no limit is entered for this model: ^l enters one", "quiet"))
     if one.caution:
         said.append(Said(3, f"CAUTION  {one.caution}", "bold"))
-    said.append(Said(6, one.datum, "quiet"))
+    by = f"  By {one.gauge}{'' if one.gauge in known.gauges else ', F4 names which'}." if one.gauge else ""
+    said.append(Said(6, f"{one.datum}{by}", "quiet"))
     return said
 
 

@@ -22,7 +22,7 @@ def rows(sheet: Any, refused: Mapping[tuple[str, str], Cell]) -> list[Row]:
     made = []
     for row in sheet.rows:
         cells = [
-            Cell(place, shown(reading), State.accepted)
+            Cell(place, in_cell(reading), State.accepted)
             if reading
             else refused.get((row.characteristic.name, place), Cell(place))
             for place, reading in zip(row.positions, row.readings, strict=True)
@@ -39,13 +39,17 @@ def asked(sheet: Any, *, every: bool) -> Any:
     return replace(sheet, rows=tuple(row for row in sheet.rows if row.is_expected))
 
 
-def shown(reading: Any) -> str:
-    """A reading in its cell: as typed; a mark by its word."""
+def in_cell(reading: Any) -> str:
+    """A reading in its cell: as typed; a mark by its word alone, the lines below tell the rest."""
     mark = reading.typed.mark.value
     if mark == "number":
         return str(reading.typed.text)
-    word = str({"not measured": "n.m.", "cannot judge": "n.j."}.get(mark, mark))
-    return word + (f" {reading.typed.detail}" if reading.typed.detail else "")
+    return str({"not measured": "n.m.", "cannot judge": "n.j."}.get(mark, mark))
+
+
+def shown(reading: Any) -> str:
+    """A reading in full: as typed; a mark by its word with what was said."""
+    return in_cell(reading) + (f" {reading.typed.detail}" if reading.typed.detail else "")
 
 
 def faces(sheet: Any, questions: Mapping[Which, str]) -> list[Face]:

@@ -35,7 +35,10 @@ class JobSheet(Vertical):
         ),
         Binding("ctrl+z", "undo", "undo", tooltip="go back to the last reading and correct it"),
         Binding(
-            "ctrl+y", "right", "it is right", tooltip="answer the question (?) about a reading: looked again, right"
+            "ctrl+y",
+            "right",
+            "look again",
+            tooltip="to a reading that may be a slip (?); on it: looked at again, it is right",
         ),
     ]
 
@@ -163,7 +166,7 @@ class JobSheet(Vertical):
             if isinstance(answer, WearlineError):
                 grid.answered(row, column, State.refused, order.entry.text, str(answer))
                 continue
-            grid.answered(row, column, State.accepted, job_faces.shown(answer.reading))
+            grid.answered(row, column, State.accepted, job_faces.in_cell(answer.reading))
             self.to_look[answer.reading.characteristic] = None
             moved |= {judged.characteristic.name: judged for judged in answer.judged}
         for name, judged in moved.items():
@@ -251,15 +254,22 @@ class JobSheet(Vertical):
         self.grid.undo()
 
     def action_right(self) -> None:
-        """The reading under the cursor was looked at again and is right: the record keeps that."""
-        at = self.grid.keying.at
-        if self.sheet is None or at is None:
+        """To the next reading that may be a slip; on it: it was looked at again and is right, and the record keeps that."""
+        grid, at = self.grid, self.grid.keying.at
+        if self.sheet is None:
             return
-        row, column = at
-        name, position = self.grid.keying.rows[row].name, self.grid.keying.rows[row].cells[column].position
-        readings = self.sheet.rows[row].readings
-        if (self.stage, name, position) in self.questions and column < len(readings) and readings[column] is not None:
-            self._order(row, column, readings[column].typed.text, LOOKED_AGAIN)
+        asked = [
+            (n, column)
+            for n, row in enumerate(grid.keying.rows)
+            for column, cell in enumerate(row.cells)
+            if (self.stage, row.name, cell.position) in self.questions and cell.state is State.accepted
+        ]
+        if at in asked:
+            reading = self.sheet.rows[at[0]].readings[at[1]]
+            if reading is not None:
+                self._order(*at, reading.typed.text, LOOKED_AGAIN)
+        elif asked:
+            grid.stand(*next((place for place in asked if at is None or place > at), asked[0]))
 
     def action_gauge(self) -> None:
         """Choose the gauge for readings of this kind."""

@@ -8,15 +8,16 @@ from rich.text import Text
 from textual import on
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
-from textual.containers import Horizontal, VerticalScroll
+from textual.containers import VerticalScroll
 from textual.widgets import Input, Static
 
 from tui.screens.standing import Standing
+from tui.widgets.labelled import Labelled
 
 FIELDS = (
     ("model", "model", "the unit's number, or any number that leads to it"),
     ("serial", "serial", "or the shop's own engraved mark"),
-    ("customer", "customer", ""),
+    ("customer", "customer", "who it goes back to"),
     ("application", "application", "what it works on"),
     ("complaint", "complaint", "in the customer's words"),
     ("hours", "hours run", "where known"),
@@ -46,9 +47,7 @@ class TakeIn(Standing):
         """A line a field, then what is known."""
         with VerticalScroll(can_focus=False):
             for name, label, hint in FIELDS:
-                with Horizontal():
-                    yield Static(label, markup=False, classes="label")
-                    yield Input(id=name, placeholder=hint)
+                yield Labelled(name, label, hint)
             yield Static("", id="known", markup=False)
 
     def on_mount(self) -> None:

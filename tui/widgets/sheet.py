@@ -109,9 +109,9 @@ class ReadingSheet(ScrollView, can_focus=True):
         self.keying.undo()
         self._settle(())
 
-    def stand(self, row: int) -> None:
-        """Stand on the first cell of a row."""
-        self._settle(self.keying.go(row, 0))
+    def stand(self, row: int, column: int = 0) -> None:
+        """Stand on a cell; what is being typed is closed first."""
+        self._settle(self.keying.go(row, column))
 
     def close_buffer(self) -> None:
         """Submit what is being typed, as before leaving the screen."""
