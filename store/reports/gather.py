@@ -8,8 +8,9 @@ from math import sqrt
 
 from sqlalchemy import Connection
 
-from store import gauges, jobs, limit_sheets, models, readings, sheets, shop, verdicts
+from store import gauges, jobs, limit_sheets, models, plans, readings, sheets, shop, verdicts
 from store.catalogue import Characteristic, catalogue
+from store.errors import Refused
 from store.jobs import Job
 from store.readings import Reading
 from store.records import Record
@@ -75,6 +76,8 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         characteristics=tuple(_characteristics(record, conn, job, found, left)),
         findings=_findings(conn, job),
         concessions=_concessions(conn, job, names),
+        plan=_plan(record, conn, job),
+        diagnosis=tuple(filter(None, (plans.diagnosis(sheet) for sheet in (found, left)))),
         gauges=_gauges(record, conn, taken),
         measured_by=tuple(contents.Person(who, names.get(who, "")) for who in sorted({r.by for r in taken})),
         assembled_by=contents.Person(job.assembled_by, names.get(job.assembled_by, "")) if job.assembled_by else None,
@@ -109,6 +112,28 @@ def _unit(conn: Connection, job: Job) -> contents.Unit:
 def _findings(conn: Connection, job: Job) -> tuple[contents.Finding, ...]:
     sql = "SELECT component, mode, mechanism, cause, note FROM finding WHERE job_id = ? ORDER BY id"
     return tuple(contents.Finding(*row) for row in rows(conn, sql, (job.id,)))
+
+
+def _plan(record: Record, conn: Connection, job: Job) -> tuple[contents.PlanLine, ...]:
+    """The rework list, each line with its prediction held against what was left; the proposal where none was accepted."""
+    listed = plans.listing(record, job.tag, conn)
+    if not listed:
+        try:
+            lines = plans.compute(record, job.tag, conn).lines if job.is_open else ()
+        except Refused:  # sizes that cannot be: the readings say so themselves, and the report still prints
+            return ()
+        return tuple(_plan_line(line, "open", "proposed, not accepted") for line in lines)
+    made = []
+    for entry in listed:
+        outcome = entry.outcome if entry.outcome != "open" or job.is_open else "not done"
+        said = "; ".join(filter(None, (entry.note, *(h.says for h in plans.held(record, job.tag, entry.line, conn)))))
+        made.append(_plan_line(entry.line, outcome, said, entry.ended_by or entry.by, entry.ended or entry.at))
+    return tuple(made)
+
+
+def _plan_line(line: plans.PlanLine, outcome: str, note: str, by: str = "", at: str = "") -> contents.PlanLine:
+    predicted = tuple(contents.Predicted(p.name, quantities.plain(p.value), p.unit) for p in line.predicted)
+    return contents.PlanLine(line.component, line.action, line.because, line.formula, predicted, outcome, note, by, at)
 
 
 def _concessions(conn: Connection, job: Job, names: dict[str, str]) -> tuple[contents.Concession, ...]:

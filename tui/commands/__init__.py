@@ -20,6 +20,7 @@ COMMANDS = {
     "read": ("read", "Add or correct readings."),
     "note": ("note", "Add notes, and find any again whichever side made the slip."),
     "judge": ("judge", "Show every verdict of a job, explained."),
+    "plan": ("plan", "What to turn, re-undercut, replace, refit; predicted sizes."),
     "limits": ("limits", "Show a model's limit sheet."),
     "parts": ("parts", "Check a number, search by size, fit a part."),
     "gauges": ("gauges", "Gauges: list, due, calibrate, recall."),

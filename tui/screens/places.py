@@ -27,6 +27,9 @@ PLACES = {
     "job": Place("tui.screens.job", "JobScreen", "Job", "one job: sheet, notes, history", needs_more=True),
     "limits": Place("tui.screens.limits", "Limits", "Limits", "wear limits of a model, with their sources", "f5"),
     "report": Place("tui.screens.report", "ReportPreview", "Report", "a report as it will print", needs_more=True),
+    "parts": Place(
+        "tui.screens.parts", "Parts", "Parts", "which number, on whose word, and does it go on this unit", "f6"
+    ),
     "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall", "f9"),
     "notes": Place("tui.screens.notes", "Notes", "Notes", "find any note again, slips and all", "f7"),
     "release": Place("tui.screens.release", "Release", "Release", "what stands in the way, and the signature", "f10"),
@@ -50,6 +53,10 @@ class Pane:
 
 
 PANES = {
+    "plan": Pane(
+        "tui.screens.job_plan", "JobPlan", "plan", "f5", "what to turn, replace and refit, and the predicted sizes"
+    ),
+    "parts": Pane("tui.screens.job_parts", "JobParts", "parts", "f6", "what goes on this model, and what was fitted"),
     "notes": Pane(
         "tui.screens.job_notes", "JobNotes", "notes", "f7", "what was seen, in words that can be found again"
     ),

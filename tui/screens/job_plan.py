@@ -1,0 +1,128 @@
+"""The rework plan of a job: the proposal with its numbers, the rework list, and predictions held against what was left."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from textual import events, on
+from textual.app import ComposeResult
+from textual.containers import Vertical
+from textual.widgets import Static
+
+from tui.screens.form import Form, Line
+from tui.widgets.listing import Column, Item, Listing
+
+
+class JobPlan(Vertical):
+    """Proposed lines over the rework list. Enter accepts a proposed line, or says that a listed one is done."""
+
+    DEFAULT_CSS = """
+    JobPlan Listing { margin: 0 1; }
+    JobPlan #line { height: 7; padding: 0 1; border-top: solid $hairline; }
+    """
+
+    def __init__(self, *, id: str | None = None) -> None:  # noqa: A002
+        super().__init__(id=id)
+        self.job_screen: Any = None
+
+    def compose(self) -> ComposeResult:
+        """One list, and the line under the cursor in full."""
+        yield Listing(
+            [Column("", 3, right=True), Column("component", 12), Column("action", 22), Column("", 0)],
+            empty="measure as found first: the plan is computed from those readings",
+        )
+        yield Static("", id="line", markup=False)
+
+    def show(self, screen: Any) -> None:
+        """Compute the plan of the screen's job."""
+        self.job_screen = screen
+        self.query_one(Listing).focus()
+
+        def question() -> Any:
+            from store import plans
+
+            listed = plans.listing(screen.record, screen.tag)
+            with_held = [(entry, plans.held(screen.record, screen.tag, entry.line)) for entry in listed]
+            return plans.compute(screen.record, screen.tag), with_held
+
+        screen.ask("plan", question, self._show)
+
+    def _show(self, answer: Any) -> None:
+        plan, listed = answer
+        items = []
+        if plan.lines:
+            items.append(Item(("proposed: Enter accepts a line, a all of them",), heading=True))
+        for number, line in enumerate(plan.lines, start=1):
+            tone = (
+                "loud"
+                if line.action in {"replace", "not-to-be-turned", "straighten-shaft-first", "turn-last-cut"}
+                else ""
+            )
+            items.append(
+                Item((str(number), line.component, line.action, line.because), ("proposed", number, line, ()), tone)
+            )
+        if listed:
+            items.append(Item(("rework list: Enter says what came of a line",), heading=True))
+        for entry, held in listed:
+            tone = "quiet" if entry.outcome != "open" else ""
+            tone = "doubt" if any(h.beyond for h in held) else tone
+            cells = (
+                entry.outcome[:4] if entry.outcome == "open" else "✓" if entry.outcome == "done" else "no",
+                entry.line.component,
+                entry.line.action,
+                entry.note or entry.line.because,
+            )
+            items.append(Item(cells, ("listed", entry.id, entry.line, held), tone))
+        self.query_one(Listing).show(items)
+        if not items:
+            self.query_one("#line", Static).update("")
+        for remark in plan.remarks:
+            self.query_one("#line", Static).update(remark)
+
+    @on(Listing.Moved)
+    def moved(self, message: Listing.Moved) -> None:
+        """The whole line: why, the formula, what is predicted, and what was left."""
+        _, _, line, held = message.item.value
+        text = [line.because]
+        if line.formula:
+            text.append(line.formula)
+        if held:
+            text += [h.says for h in held]
+        else:
+            text += [f"predicted, not measured: {p.name} {float(p.value):.4g} {p.unit}" for p in line.predicted]
+        self.query_one("#line", Static).update("\n".join(text))
+
+    @on(Listing.Chosen)
+    def chosen(self, message: Listing.Chosen) -> None:
+        """Accept a proposed line; say what came of a listed one."""
+        kind, number, line, _ = message.item.value
+        if kind == "proposed":
+            self._accept([number])
+            return
+
+        def keep(values: dict[str, str]) -> Any:
+            from store import plans
+
+            screen = self.job_screen
+            outcome = values["outcome"].strip() or "done"
+            return plans.finish(screen.record, screen.tag, number, outcome=outcome, note=values["note"])
+
+        lines = [Line("outcome", "outcome", "done or declined", "done"), Line("note", "note", "why, where declined")]
+        form = Form(f"{line.component}: {line.action}", lines, keep)
+        self.app.push_screen(form, lambda done: self.show(self.job_screen) if done else None)
+
+    def on_key(self, event: events.Key) -> None:
+        """a accepts every proposed line."""
+        if event.key == "a":
+            event.stop()
+            self._accept(None)
+
+    def _accept(self, numbers: list[int] | None) -> None:
+        screen = self.job_screen
+
+        def question() -> Any:
+            from store import plans
+
+            return plans.accept(screen.record, screen.tag, numbers)
+
+        screen.ask("accept", question, lambda listed: self.show(screen))
