@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from json import dumps
@@ -74,6 +75,18 @@ def search(record: Record, kind: str, asked: Mapping[str, str], within: str | No
     return BySize(kind, wanted, tolerance, tuple(matches[:most]), _cautions(kind, wanted), more)
 
 
+_SIZE_TYPED = re.compile(r"([^\s=]+)\s*=\s*([^=]*?)(?=\s+[^\s=]+\s*=|\s*$)")
+
+
+def search_typed(record: Record, text: str) -> BySize:
+    """A search as typed in one line: `brush width=8 length=5/8 in within=0.2`. Raises Refused as `search` does."""
+    named = dict(_SIZE_TYPED.findall(text))
+    first = _SIZE_TYPED.search(text)
+    kind = text[: first.start()].strip() if first else ""
+    within = named.pop("within", None)
+    return search(record, kind, {name: value for name, value in named.items() if value}, within)
+
+
 def is_of_kind(kind: str, asked: str) -> bool:
     """Whether a part's kind is the one asked: every word of it, singular or plural (`brush` finds `brush set`)."""
     have = {_singular(word) for word in kind.casefold().replace("-", " ").split()}
@@ -124,7 +137,7 @@ def _cautions(kind: str, wanted: Sequence[Size]) -> tuple[str, ...]:
 
 
 def words(record: Record, text: str, most: int = MOST) -> tuple[Number, ...]:
-    """Numbers whose number, maker, kind or description holds every word of `text`, in the order of the lists.
+    """Numbers whose number, maker, kind or description holds every word of `text`, plurals apart, in the order of the lists.
 
     At most `most`; a list is read through until so many are found.
     """
@@ -137,7 +150,7 @@ def words(record: Record, text: str, most: int = MOST) -> tuple[Number, ...]:
     )
     values = []
     for word in asked:
-        escaped = word.replace("\\", "\\\\").replace("%", "\\%").replace("_", "\\_")
+        escaped = _singular(word.casefold()).replace("\\", "\\\\").replace("%", "\\%").replace("_", "\\_")
         values += [f"%{escaped}%"] * 4
     sql = f"SELECT id, number, maker, key, kind, description, status FROM part_number WHERE {like} ORDER BY id LIMIT ?"  # noqa: S608
     with record.read() as conn:

@@ -12,6 +12,8 @@ from json import dumps
 
 from sqlalchemy import Connection
 
+from store.parts import numbers
+from store.parts.numbers import Number
 from store.records import Record
 from store.rules import numbers as rule
 from store.rules.numbers import Asked, How
@@ -119,3 +121,25 @@ def _ranked(asked: Asked, found: list[Candidate]) -> tuple[Candidate, ...]:
         return _ORDER[one.how], OSA.distance(asked.raw, one.key), one.model is None, one.number, one.maker
 
     return tuple(sorted(found, key=rank))
+
+
+def asked_for(record: Record, text: str) -> tuple[tuple[Candidate, Number | None], ...]:
+    """What may be meant by a number as typed, each with the number itself; None for a model that no list names.
+
+    Raises Refused where there is nothing to look for.
+    """
+    asked = rule.asked(text)
+    with record.read() as conn:
+        found = find(record, conn, asked)
+        named = {one.id: one for one in numbers.by_ids(conn, [one.id for one in found if one.id is not None])}
+    return tuple((one, named.get(one.id) if one.id is not None else None) for one in found)
+
+
+def of_number(record: Record, number: Number) -> Candidate:
+    """A number of the lists as a candidate that is the very number."""
+    with record.read() as conn:
+        model = next((m for m in models(record, conn).keys.get(number.key, ()) if not number.maker), None)
+    return Candidate(
+        number.number, number.maker, How.exact, number.kind, number.description, number.status, number.id,
+        model.id if model else None, number.key,
+    )  # fmt: skip
