@@ -66,16 +66,18 @@ def test_search(path: Path) -> None:
 HOSTILE = (
     "a", "e*", "NOT", "-a", '"' * 5000, "a" * 5000, "aeiou " * 1000, " ".join(f"solenoi{c} contact{c}" for c in "abcdefghij"),
     '"armature armature armature"', "-armature -contacts -solenoid brush", "KM-1 KM-12 KM-123 KM-1234", "x y z q w e r t u i o p",
+    " ".join(f"commutatr{c}qu" for c in "abcdefghijkl"),
 )  # fmt: skip
 
 
 def test_hostile(path: Path) -> None:
-    """Whatever is asked is answered within a fifth of a second, the second time it is asked at the latest."""
+    """Whatever is asked is answered within a fifth of a second, measured as the better of two times from nothing kept."""
     record = records.open(path)
     search.find(record, "warm up")
     for asked in HOSTILE:
         times = []
         for _ in range(2):
+            record.cache["search"].lexicon.count(0, 0)  # forgets what was kept of the time before
             begun = time.perf_counter()
             search.find(record, asked, typing=True)
             times.append(time.perf_counter() - begun)
