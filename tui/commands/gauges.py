@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from pathlib import Path
 from typing import TYPE_CHECKING
 
 import click
@@ -94,3 +95,51 @@ def recall(record: Record, gauge: str, as_json: bool) -> None:
         [(t.tag, t.outcome, t.readings, times.local(t.first), times.local(t.last)) for t in found],
         empty=f"no reading by {gauge} since its last good calibration",
     )
+
+
+@gauges.command(
+    epilog="Example: wearline gauges study micrometer.csv --gauge OM-25 --model KS-100 --characteristic commutator-diameter"
+)
+@click.argument("file", type=click.Path(exists=True, dir_okay=False, path_type=Path))
+@click.option("--gauge", default="", help="Whose study it is; its unit holds in the file.")
+@click.option("--unit", default="mm", show_default=True, help="Unit of the file, without --gauge.")
+@click.option("--model", default="", help="Hold it against a limit of this model's sheet.")
+@click.option("--characteristic", default="", help="The limit to hold it against.")
+@click.option("--keep", is_flag=True, help="Keep the repeatability for the gauge; it counts in every verdict by it.")
+@as_json
+@on_record
+def study(
+    record: Record, file: Path, gauge: str, unit: str, model: str, characteristic: str, keep: bool, as_json: bool
+) -> None:
+    """A gauge study from FILE (part, person, value): repeatability, people, and which limit the gauge can judge."""
+    from store import gauge_studies as studies
+
+    if keep and not gauge:
+        raise click.UsageError("--keep needs --gauge")
+    if bool(model) != bool(characteristic):
+        raise click.UsageError("--model and --characteristic go together")
+    made = studies.of_gauge(record, file, gauge)[0] if gauge else studies.read(file, unit)
+    held = studies.against(record, made, model, characteristic) if model else None
+    kept = studies.keep(record, gauge, made).name if keep else None
+    if as_json:
+        write_json(studies.as_json(made, held, kept))
+        return
+    found, shares = made.study, made.shares
+    click.echo(f"{len(made.parts)} parts x {len(made.people)} people x {made.repeats} repeats, {made.unit}")
+    pooled = "is pooled into repeatability" if found.pooled else "is significant and kept"
+    click.echo(f"the interaction of parts and people {pooled} (alpha {studies.ALPHA})")
+    write_table(
+        ("effect", "df", "SS", "MS", "F", "p"),
+        [
+            (e.name, e.freedom, f"{e.squares:.6g}", f"{e.mean:.6g}", *("" if x is None else f"{x:.4g}" for x in (e.f, e.p)))
+            for e in found.effects
+        ],
+    )  # fmt: skip
+    write_table(
+        ("spread", f"sd, {made.unit}", "of study variation"),
+        [(name, f"{shares[name] * found.total:.5g}", f"{100 * shares[name]:.1f} %") for name in shares],
+    )
+    if held:
+        click.echo(f"{held.characteristic}: {held.says}")
+    if kept:
+        click.echo(f"kept as the repeatability of {kept}")
