@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from sqlalchemy import Connection
@@ -114,8 +114,8 @@ def counts(record: Record) -> dict[str, int]:
 
 def _job(row: Any) -> Job:
     """A row of _JOB."""
-    *said, from_history = row
-    return Job(*said, from_history=bool(from_history))
+    made = Job(*row)
+    return replace(made, from_history=bool(made.from_history))
 
 
 def of_unit(record: Record, model: str, serial: str) -> tuple[Job, ...]:

@@ -130,9 +130,8 @@ def by_revision(record: Record, conn: Connection, revision_id: int) -> LimitShee
         raise NotFound("limit revision", str(revision_id))
     rev = Revision(row.id, row.model_id, row.number, Rule(row.decision), row.at, row.by, row.why)
     known = catalogue.catalogue(record, conn)
-    rows = conn.execute(
-        select(LimitRow.__table__, LimitRow.count.label("expected")).where(LimitRow.revision_id == revision_id)
-    ).all()  # type: ignore[attr-defined]
+    sql = "SELECT *, count AS expected FROM wear_limit WHERE revision_id = ?"  # a row has a method named count
+    rows = conn.exec_driver_sql(sql, (revision_id,)).all()
     order = {c.id: n for n, c in enumerate(known.all)}
     limits = tuple(
         SheetLimit(

@@ -285,7 +285,8 @@ def _remarks(found: Sheet) -> Iterator[str]:
     row = _row(found, "commutator-runout")
     if row is not None and row.judged is not None and row.judged.judgement.count >= 4:
         share = commutator.read_share(row.judged.judgement.count)
-        yield f"if these {row.judged.judgement.count} are single dial readings round the circle, they see {share:.0%} of a once-a-turn runout at least"
+        count = row.judged.judgement.count
+        yield f"if these {count} are single dial readings round the circle, they see {share:.0%} of a once-a-turn runout at least"
 
 
 def diagnosis(sheet: Sheet) -> str:

@@ -316,7 +316,9 @@ class _Judging:
 
     def count(self, progress: Progress) -> int:
         """How many judgements stand. Raises _Found for the first that does not."""
-        orphan = self.raw.execute("SELECT job_id FROM judgement WHERE job_id NOT IN (SELECT id FROM job) LIMIT 1").fetchone()
+        orphan = self.raw.execute(
+            "SELECT job_id FROM judgement WHERE job_id NOT IN (SELECT id FROM job) LIMIT 1"
+        ).fetchone()
         if orphan:
             raise _Found(f"judgement of job {orphan[0]}", "belongs to no job")
         total = 0

@@ -89,9 +89,8 @@ def catalogue(record: Record, conn: Connection | None = None) -> Catalogue:
 
 
 def _read(conn: Connection) -> Catalogue:
-    rows = conn.execute(
-        select(CharacteristicRow.__table__, CharacteristicRow.count.label("expected")).order_by("place", "id")
-    ).all()  # type: ignore[attr-defined]
+    sql = "SELECT *, count AS expected FROM characteristic ORDER BY place, id"  # a row has a method named count
+    rows = conn.exec_driver_sql(sql).all()
     found = tuple(
         Characteristic(
             id=r.id, name=r.name, component=r.component, label=r.label, machines=_parts(r.machines),

@@ -54,7 +54,7 @@ def _said(value: object) -> str:
     if value is None or value == "" or value == ():
         return "nothing"
     if isinstance(value, tuple):
-        named = [getattr(one, "initials", None) or getattr(one, "name", "") for one in value]
+        named = [str(getattr(one, "initials", None) or getattr(one, "name", "")) for one in value]
         return ", ".join(named) if all(named) else f"{len(value)} lines"
     text = str(getattr(value, "initials", value))
     return text if len(text) <= 80 else text[:79] + "…"

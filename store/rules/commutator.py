@@ -28,7 +28,7 @@ class Action(StrEnum):
     polish = "polish"
     turn = "turn"
     turn_last_cut = "turn-last-cut"
-    replace = "replace"
+    replace = "replace"  # type: ignore[assignment]  # the trade's word; nobody replaces letters in an action
     straighten_shaft_first = "straighten-shaft-first"
     not_to_be_turned = "not-to-be-turned"
     re_undercut = "re-undercut"

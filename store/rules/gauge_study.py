@@ -86,6 +86,7 @@ def _components(a: int, b: int, n: int, df: tuple[int, ...], ss: tuple[float, ..
     f_cell = ms_cell / ms_error if ms_error else float("inf")
     p_cell = _upper(f_cell, df[2], df[3])
     pooled = p_cell >= ALPHA
+    effects: tuple[Effect, ...]
     if pooled:
         rest_df, rest_ss = df[2] + df[3], ss[2] + ss[3]
         rest = rest_ss / rest_df

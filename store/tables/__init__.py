@@ -4,4 +4,17 @@ from __future__ import annotations
 
 from store.tables import audit, gauges, jobs, limits, models, notes, parts, people, readings, releases, rework, search
 
-__all__ = ["audit", "gauges", "jobs", "limits", "models", "notes", "parts", "people", "readings", "releases", "rework", "search"]
+__all__ = [
+    "audit",
+    "gauges",
+    "jobs",
+    "limits",
+    "models",
+    "notes",
+    "parts",
+    "people",
+    "readings",
+    "releases",
+    "rework",
+    "search",
+]

@@ -69,13 +69,16 @@ def test_backup(big: Path, tmp_path: Path) -> None:
     record = records.open(big)
 
     def ours(n: int) -> object:
-        return backups.backup(record, tmp_path / f"ours-{n}.wearline").unlink()
+        path = backups.backup(record, tmp_path / f"ours-{n}.wearline")
+        path.unlink()
+        return path
 
     def theirs(n: int) -> object:
         path = Path(shutil.copyfile(big, tmp_path / f"theirs-{n}"))
         with path.open("rb+") as file:
             os.fsync(file.fileno())
-        return path.unlink()
+        path.unlink()
+        return path
 
     a, b, ratio = in_turn(ours, theirs, 5)
     record.close()

@@ -219,7 +219,9 @@ class Shop:
         if draw.random() < 0.7:
             lot = f"BR-{draw.randint(21, 26)}{draw.randint(0, 9)}"
             supplier = draw.choices(("Wray Electrical", "Penhallow Spares"), (60, 40))[0]
-            self.books.fitted.append((visit.tag, f"BS-{suffix}", "Lorne & Hobb", lot, supplier, "", "1", visit.bench, at))
+            self.books.fitted.append(
+                (visit.tag, f"BS-{suffix}", "Lorne & Hobb", lot, supplier, "", "1", visit.bench, at)
+            )
 
     def _stage(self, visit: Visit, stage: str, moment: datetime, *, partial: bool = False) -> None:
         worn = self.draw.betavariate(3, 2.4)

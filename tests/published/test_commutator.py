@@ -37,7 +37,8 @@ def widths(rho: np.ndarray) -> np.ndarray:
     """What a micrometer's flat anvils read in every direction: the distance of the two parallel tangents."""
     reach = 90
     support = np.max([np.roll(rho, k) * cos(k * 2 * pi / POINTS) for k in range(-reach, reach + 1)], axis=0)
-    return support + np.roll(support, POINTS // 2)
+    both: np.ndarray = support + np.roll(support, POINTS // 2)
+    return both
 
 
 @pytest.mark.parametrize("anvils", ["narrow", "flat"])

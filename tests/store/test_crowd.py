@@ -43,7 +43,7 @@ def test_eight_write_and_one_backs_up(record: Record, tmp_path: Path) -> None:
         )
         for n in range(WRITERS)
     ]
-    copies = []
+    copies: list[Path] = []
     end = time.monotonic() + SECONDS
     while time.monotonic() < end:
         copies.append(backups.backup(record, tmp_path / f"copy-{len(copies)}.wearline"))

@@ -60,7 +60,7 @@ def full(tmp_path_factory: pytest.TempPathFactory) -> Path:
     return path
 
 
-def tampered(full: Path, tmp_path: Path, alter: Callable[[sqlite3.Connection], None]) -> verify.Wrong | None:
+def tampered(full: Path, tmp_path: Path, alter: Callable[[sqlite3.Connection], object]) -> verify.Wrong | None:
     """What verify says of a copy that was altered by the shell, triggers dropped first and put back after."""
     path = tmp_path / "tampered.wearline"
     for ending in ("", "-wal", "-shm"):

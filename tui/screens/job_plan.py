@@ -28,7 +28,7 @@ class JobPlan(Vertical):
     def compose(self) -> ComposeResult:
         """One list, and the line under the cursor in full."""
         yield Listing(
-            [Column("", 3, right=True), Column("component", 12), Column("action", 22), Column("", 0)],
+            [Column("", 5, right=True), Column("component", 12), Column("action", 22), Column("", 0)],
             empty="measure as found first: the plan is computed from those readings",
         )
         yield Static("", id="line", markup=False)
@@ -50,9 +50,13 @@ class JobPlan(Vertical):
     def _show(self, answer: Any) -> None:
         plan, listed = answer
         items = []
-        if plan.lines:
+        accepted = {(entry.line.component, entry.line.action, entry.line.because) for entry, _ in listed}
+        proposed = [
+            (n, x) for n, x in enumerate(plan.lines, start=1) if (x.component, x.action, x.because) not in accepted
+        ]
+        if proposed:
             items.append(Item(("proposed: Enter accepts a line, a all of them",), heading=True))
-        for number, line in enumerate(plan.lines, start=1):
+        for number, line in proposed:
             tone = (
                 "loud"
                 if line.action in {"replace", "not-to-be-turned", "straighten-shaft-first", "turn-last-cut"}
@@ -67,7 +71,7 @@ class JobPlan(Vertical):
             tone = "quiet" if entry.outcome != "open" else ""
             tone = "doubt" if any(h.beyond for h in held) else tone
             cells = (
-                entry.outcome[:4] if entry.outcome == "open" else "✓" if entry.outcome == "done" else "no",
+                {"declined": "no"}.get(entry.outcome, entry.outcome),
                 entry.line.component,
                 entry.line.action,
                 entry.note or entry.line.because,
@@ -82,6 +86,8 @@ class JobPlan(Vertical):
     @on(Listing.Moved)
     def moved(self, message: Listing.Moved) -> None:
         """The whole line: why, the formula, what is predicted, and what was left."""
+        from store import plans
+
         _, _, line, held = message.item.value
         text = [line.because]
         if line.formula:
@@ -89,7 +95,7 @@ class JobPlan(Vertical):
         if held:
             text += [h.says for h in held]
         else:
-            text += [f"predicted, not measured: {p.name} {float(p.value):.4g} {p.unit}" for p in line.predicted]
+            text += [f"predicted, not measured: {p.name} {plans.shown(p.value)} {p.unit}" for p in line.predicted]
         self.query_one("#line", Static).update("\n".join(text))
 
     @on(Listing.Chosen)
