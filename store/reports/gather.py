@@ -15,6 +15,7 @@ from store.jobs import Job
 from store.readings import Reading
 from store.records import Record
 from store.reports import contents
+from store.reports.parts_fitted import parts_fitted
 from store.rules import quantities, wear
 from store.rules.limits import Limit, Rule
 from store.rules.readings import Mark
@@ -77,6 +78,7 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         findings=_findings(conn, job),
         concessions=_concessions(conn, job, names),
         plan=_plan(record, conn, job),
+        fitted=parts_fitted(record, conn, job),
         diagnosis=tuple(filter(None, (plans.diagnosis(sheet) for sheet in (found, left)))),
         gauges=_gauges(record, conn, taken),
         measured_by=tuple(contents.Person(who, names.get(who, "")) for who in sorted({r.by for r in taken})),
