@@ -170,7 +170,7 @@ _CCW = {
 }
 _BOTH = {"both", "either", "reversible"}
 _DRIVE_END = {"drive", "pinion", "pulley", "de"}
-_OTHER_END = {"commutator", "opposite", "rear", "brush", "non-drive", "nde", "anti-drive", "slip-ring", "back"}
+_OTHER_END = {"commutator", "opposite", "rear", "brush", "non", "non-drive", "nde", "anti", "anti-drive", "slip-ring", "back"}
 _TURNED = {"cw": "ccw", "ccw": "cw", "both": "both"}
 
 
@@ -189,7 +189,8 @@ def rotation(text: str) -> str | None:
     ]
     if way is None or not rest or all(word in _DRIVE_END for word in rest):
         return way
-    return _TURNED[way] if all(word in _OTHER_END for word in rest) else None
+    is_other = any(word in _OTHER_END for word in rest) and all(word in _OTHER_END | _DRIVE_END for word in rest)
+    return _TURNED[way] if is_other else None
 
 
 _SIZE = re.compile(r"([+-]?\d+(?:[.,]\d+)?)(?:\s*/\s*(\d+))?\s*([^\d\s]\S*)?\s*\Z")

@@ -20,6 +20,8 @@ KS_100 = {"rotation": "cw", "viewed-from": "drive end", "volts": "12", "teeth": 
         ("cw viewed from the commutator end", "ccw"),
         ("clockwise, from opposite end", "ccw"),
         ("both from commutator end", "both"),
+        ("cw from drive-end", "cw"),
+        ("cw, opposite drive end", "ccw"),
         ("ccw engine, from flywheel", None),
         ("round and round", None),
         ("", None),
