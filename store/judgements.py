@@ -18,8 +18,8 @@ from store.catalogue import Catalogue, Characteristic, catalogue
 from store.gauges import Gauge
 from store.limit_sheets import LimitSheet, SheetLimit
 from store.records import Record
-from store.rules import certainty, derived, quantities
-from store.rules.limits import Judgement, Measured, because, from_kept, judge, kept
+from store.rules import at_voltage, certainty, derived, quantities
+from store.rules.limits import Judgement, Limit, Measured, because, from_kept, judge, kept
 from store.rules.readings import Mark, Typed
 from store.sqlite.engine import driver, rows
 
@@ -174,28 +174,49 @@ def _all_of(
     made = {}
     for stage, taken in by_stage.items():
         for one in _with_derived(known, taken, kind, sheet, stage):
-            sources = one.sources or (one.name,)
-            if not all(name in taken for name in sources):
+            if not all(name in taken for name in one.sources or (one.name,)):
                 continue
-            limit = sheet.at(one.name, stage) if sheet else None
-            key = (one.id, limit.id if limit else None, *(tuple(taken[name]) for name in sources))
+            limit, sources = sheet.at(one.name, stage) if sheet else None, [n for n in read_for(one) if n in taken]
+            volts = _volts_limit(one, sheet, stage)
+            key = (one.id, limit.id if limit else None, volts, *(tuple(taken[name]) for name in sources))
             tail = before.get(key)
             if tail is None:
                 sure: Sure = {}
                 readings = {name: [measured(r, owned, sure) for r in taken[name]] for name in sources}
-                tail = stored(job_id, one, stage, limit, judged(one, limit, readings))[3:]
+                tail = stored(job_id, one, stage, limit, judged(one, limit, readings, volts))[3:]
                 if len(before) < MOST_KNOWN:
                     before[key] = tail
             made[(stage, one.id)] = (job_id, stage, one.id, *tail)
     return made
 
 
-def judged(one: Characteristic, limit: SheetLimit | None, readings: dict[str, list[Measured]]) -> Judgement:
-    """The judgement of one characteristic by readings of it (or of what it is derived from), by name."""
+def judged(
+    one: Characteristic, limit: SheetLimit | None, readings: dict[str, list[Measured]], volts: Limit | None = None
+) -> Judgement:
+    """The judgement of one characteristic by readings of it (or of what it is derived from), by name.
+
+    `volts` is the limit of the voltage that governs it, where one does.
+    """
     exact = limit.limit if limit else None
+    if volts is not None:
+        tested = readings.get(at_voltage.GOVERNED[one.name], [])
+        return at_voltage.judge_at(one.name, readings.get(one.name, []), one.statistic, exact, tested, volts)
     if one.derive:
         return derived.judge(one.derive, {name: readings.get(name, []) for name in one.sources}, exact)
     return judge(readings.get(one.name, []), one.statistic, exact)
+
+
+def read_for(one: Characteristic) -> tuple[str, ...]:
+    """The characteristics whose readings decide the judgement of one: its parts or itself, and the voltage it was tested at."""
+    own = one.sources or (one.name,)
+    governed_by = at_voltage.GOVERNED.get(one.name)
+    return own if governed_by is None else (*own, governed_by)
+
+
+def _volts_limit(one: Characteristic, sheet: LimitSheet | None, stage: str) -> Limit | None:
+    governed_by = at_voltage.GOVERNED.get(one.name)
+    limit = sheet.at(governed_by, stage) if sheet and governed_by else None
+    return limit.limit if limit else None
 
 
 def _put(
@@ -203,7 +224,7 @@ def _put(
     readings: dict[str, list[Measured]],
 ) -> Judged:  # fmt: skip
     limit = sheet.at(one.name, stage) if sheet else None
-    judgement = judged(one, limit, readings)
+    judgement = judged(one, limit, readings, _volts_limit(one, sheet, stage))
     row = stored(job_id, one, stage, limit, judgement)
     driver(conn).execute(_PUT, row)
     return Judged(one, stage, limit, judgement)
@@ -225,10 +246,12 @@ def stored(
 def _with_derived(
     known: Catalogue, names: Iterable[str], kind: str, sheet: LimitSheet | None, stage: str
 ) -> list[Characteristic]:
-    """The characteristics of these names, and the derived ones that the sheet limits."""
+    """The characteristics of these names, those that a voltage among them governs, and the derived ones that are limited."""
     wanted: dict[str, Characteristic] = {}
     for name in names:
         wanted[name] = known.by_name[name]
+        for governed in at_voltage.GOVERNS.get(name, ()):
+            wanted[governed] = known.by_name[governed]
         for made in known.derived_from.get(name, ()):
             if kind in made.machines and sheet is not None and sheet.at(made.name, stage) is not None:
                 wanted[made.name] = made
@@ -259,7 +282,7 @@ def _sheet(record: Record, conn: Connection, job: Judgeable) -> LimitSheet | Non
 def _measured(
     record: Record, conn: Connection, job_id: int, stage: str, known: Catalogue, wanted: Sequence[Characteristic]
 ) -> dict[str, list[Measured]]:
-    ids = {known.by_name[name].id for one in wanted for name in (one.sources or (one.name,))}
+    ids = {known.by_name[name].id for one in wanted for name in read_for(one)}
     owned = gauges.by_id(record, conn)
     found = rows(conn, _CURRENT.format(",".join("?" * len(ids))), (job_id, stage, *ids))
     sure: Sure = {}

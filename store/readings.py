@@ -146,7 +146,7 @@ def _add(record: Record, tag: str, entries: Sequence[Entry], *, whole: bool) -> 
             touched.setdefault(entry.stage, {})[one.name] = None
         for stage, names in touched.items():
             for judged in judgements.refresh(record, change.conn, job, stage, names):
-                for name in judged.characteristic.sources or (judged.characteristic.name,):
+                for name in judgements.read_for(judged.characteristic):
                     moved.setdefault((stage, name), []).append(judged)
     return tuple(
         a if isinstance(a, Refused) else Accepted(a, tuple(moved.get((a.stage, a.characteristic), ()))) for a in answers

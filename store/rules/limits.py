@@ -84,8 +84,8 @@ class Judgement:
     rule         the rule that was applied, `simple` where the uncertainty is not known, whatever was asked for
     probability  that the size conforms (JCGM 106:2012), None without a known uncertainty
     wear_used    (new - y)/(new - limit), may pass 1; None without a new size
-    reason       a code that `because` puts into words: "", short, failed, cannot-judge, skipped, narrow, unknown-u ...
-    detail       what was said with a failed or skipped test
+    reason       a code that `because` puts into words: "", short, failed, cannot-judge, skipped, narrow, unknown-u, voltage
+    detail       what was said with a failed or skipped test, or how the value was brought to the limit's voltage
     """
 
     verdict: Verdict
@@ -335,9 +335,13 @@ def because(judged: Judgement, limit: Limit | None, noun: str) -> str:
     if judged.value is None:
         return f"{judged.count} of {judged.expected} read" if judged.count else "no reading"
     subject = _subject(judged, noun)
+    if judged.reason == "voltage":
+        return f"{subject} is {_with_unit(quantities.shown(judged.value, judged.places), judged.unit)}; {judged.detail}"
     if limit is None or (limit.low is None and limit.high is None):
         return f"{subject} is {_with_unit(quantities.shown(judged.value, judged.places), judged.unit)}; no limit is entered"
     sentence = f"{subject} is {_against(judged, limit)}"
+    if judged.detail:
+        sentence += f" ({judged.detail})"
     if judged.reason == "short":
         sentence = f"{judged.count} of {judged.expected} read; so far {sentence}"
     if judged.verdict is Verdict.in_doubt:
