@@ -13,6 +13,7 @@ from textual.message import Message
 from textual.screen import ModalScreen
 
 from tui.screens.places import PLACES, load
+from tui.screens.standing import say
 from tui.theme import THEMES, Uncoloured
 from tui.writer import Order, Writer
 
@@ -55,9 +56,9 @@ class Wearline(App[None]):
             self.answers = answers
             super().__init__()
 
-    def __init__(self, path: Path, acting: str | None = None) -> None:
+    def __init__(self, path: Path, acting: str | None = None, *, debug: bool = False) -> None:
         super().__init__()
-        self.path, self.acting = path, acting
+        self.path, self.acting, self.shows_faults = path, acting, debug
         self.record: Record | None = None
         self.writer: Writer | None = None
         for theme in THEMES.values():
@@ -131,6 +132,10 @@ class Wearline(App[None]):
             method: Callable[..., None] | None = getattr(screen, what, None)
             if method is not None:
                 method(*values)
+
+    def notify(self, message: str, *, severity: str = "information", **_: Any) -> None:
+        """What came of something, said above the keys."""
+        say(self.screen_stack, message, is_loud=severity != "information")
 
     def act_as(self, initials: str | None) -> None:
         """Somebody else works here now."""

@@ -24,7 +24,7 @@ from tui.app import Wearline
 @contextlib.asynccontextmanager
 async def opened(path: Path, size: tuple[int, int] = (80, 24), acting: str | None = None) -> AsyncIterator[Any]:
     """The application on a record with the record open, as a pilot."""
-    app = Wearline(path, acting)
+    app = Wearline(path, acting, debug=True)
     async with app.run_test(size=size) as pilot:
         await until(pilot, lambda: app.record is not None)
         await settled(pilot)

@@ -83,7 +83,7 @@ def cli(ctx: click.Context, record: str | None, acting: str | None, debug: bool)
     if ctx.invoked_subcommand is None:
         from tui.commands.screens import run
 
-        run(record, acting)
+        run(record, acting, debug=debug)
 
 
 def main() -> None:

@@ -64,7 +64,6 @@ class Bench(Standing):
 
     def on_mount(self) -> None:
         """Look for what others have written, twice a second."""
-        super().on_mount()
         self.query_one("#search").focus()
         self.set_interval(LOOK_AGAIN_SECONDS, self.look_again)
 
@@ -169,8 +168,7 @@ class Bench(Standing):
         """Take in a core, then open its job."""
         from tui.screens.take_in import TakeIn
 
-        if self.record is not None:
-            self.app.push_screen(TakeIn(), lambda tag: self.wearline.go("job", tag) if tag else None)
+        self.app.push_screen(TakeIn(), lambda tag: self.wearline.go("job", tag) if tag else None)
 
     def action_ended(self) -> None:
         """Ended jobs too, or open ones only."""

@@ -11,6 +11,7 @@ from textual.containers import Horizontal
 from textual.widgets import Static
 
 from tui.screens.form import Form, Line
+from tui.screens.new_model import NewModel
 from tui.screens.standing import Standing
 from tui.widgets.listing import Column, Item, Listing
 
@@ -56,7 +57,7 @@ class Limits(Standing):
         """Two lists and a line on the revision."""
         yield Static("", id="revision", markup=False)
         with Horizontal():
-            yield Listing([Column("model", 0), Column("rev", 3, right=True)], empty="F5 enters a model", id="models")
+            yield Listing([Column("model", 0), Column("rev", 3, right=True)], empty="F5: new model", id="models")
             yield Listing(SHEET, empty="no limits yet: Enter on a line enters one, F3 copies a sheet", id="sheet")
         yield Static("", id="about", markup=False)
 
@@ -111,7 +112,8 @@ class Limits(Standing):
     def _show_sheet(self, answer: Any) -> None:
         model, sheets, known, characteristics = answer
         self.sheet = sheets[-1] if sheets else None
-        said = f"{model.number}  {model.kind}  {model.volts} V  {model.rotation}"
+        volts = f"  {model.volts} V" if model.volts else ""
+        said = f"{model.number}  {model.kind}{volts}  {model.rotation}"
         if self.sheet is not None:
             rev = self.sheet.revision
             said += f"   revision {rev.number} of {known}, {rev.decision.value}, {rev.at[:10]} by {rev.by}  {rev.why}"
@@ -214,26 +216,12 @@ class Limits(Standing):
     def action_new_model(self) -> None:
         """Enter a model."""
 
-        def keep(values: dict[str, str]) -> Any:
-            from store import models
-
-            assert self.record is not None
-            return models.enter(self.record, values)
-
-        lines = [
-            Line("model", "number", "as on its plate"), Line("kind", "kind", "starter, generator or alternator"),
-            Line("volts", "volts"), Line("rotation", "rotation", "cw, ccw or both, seen from the drive end"),
-            Line("teeth", "teeth"), Line("bars", "bars"), Line("poles", "poles"),
-            Line("may_turn", "may be turned", "yes or no", "yes"), Line("may_undercut", "may be undercut", "yes or no", "yes"),
-            Line("note", "note"),
-        ]  # fmt: skip
-
         def done(made: Any) -> None:
             if made is not None:
                 self.model = made.number
                 self.record_opened()
 
-        self.app.push_screen(Form("A new model", lines, keep), done)
+        self.app.push_screen(NewModel(), done)
 
     def action_drop(self) -> None:
         """A new revision without the limit under the cursor; a reason is asked."""

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from rich.text import Text
@@ -115,6 +115,13 @@ class Standing(Screen[Any]):
                 answer = question()
             except WearlineError as fault:
                 self.post_message(self.Answered(group, number, lambda why: self.refuse(str(why)), fault))
+            except Exception as fault:
+                if self.wearline.shows_faults:
+                    raise
+                what = (
+                    f"a fault in the program, not in what you did ({type(fault).__name__}: {fault}); --debug shows it"
+                )
+                self.post_message(self.Answered(group, number, self.refuse, what))
             else:
                 self.post_message(self.Answered(group, number, then, answer))
 
@@ -127,4 +134,12 @@ class Standing(Screen[Any]):
 
     def refuse(self, why: str) -> None:
         """Say in one line why something was not done."""
-        self.notify(why, severity="error", timeout=10, markup=False)
+        self.notify(why, severity="error", markup=False)
+
+
+def say(screens: Sequence[Screen[Any]], words: str, *, is_loud: bool) -> None:
+    """Say something above the keys of the full screen that is on top or beneath a form."""
+    for screen in reversed(screens):
+        for line in screen.query(KeyLine):
+            line.say(words, is_loud=is_loud)
+            return

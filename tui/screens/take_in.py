@@ -40,6 +40,7 @@ class TakeIn(Standing):
     )
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("ctrl+s", "take", "take in", priority=True),
+        Binding("f5", "new_model", "new model", tooltip="enter the model, where the shop has not had it yet"),
         Binding("escape", "close", "back"),
     ]
 
@@ -65,9 +66,16 @@ class TakeIn(Standing):
         else:
             self.action_take()
 
+    def record_opened(self) -> None:
+        """What was typed before the record was open is looked up now."""
+        self.say_where()
+        self.look_up()
+
     @on(Input.Changed, "#model,#serial")
     def look_up(self) -> None:
         """What model this is, and what this unit was here for before."""
+        if self.record is None:
+            return
         model, serial = (self.query_one(f"#{name}", Input).value for name in ("model", "serial"))
 
         def question() -> Any:
@@ -90,13 +98,14 @@ class TakeIn(Standing):
 
         text = Text()
         if isinstance(answer, str):
-            text.append(answer, style="italic")
+            text.append(f"{answer}. F5 enters it as a new model.")
         elif answer is not None:
             meant, earlier = answer
             model = meant.model
             for step in meant.says:
                 text.append(f"{step}\n", style="italic")
-            text.append(f"{model.number}  {model.kind}  {model.volts} V  {model.rotation}  {model.note}\n")
+            volts = f"  {model.volts} V" if model.volts else ""
+            text.append(f"{model.number}  {model.kind}{volts}  {model.rotation}  {model.note}\n")
             for job in earlier:
                 text.append(f"{job.tag}  {times.local(job.taken_in)[:10]}  {job.outcome}", style="bold")
                 text.append(f"  {times.local(job.ended)[:10] if job.ended else ''}  {job.complaint}\n")
@@ -106,8 +115,25 @@ class TakeIn(Standing):
                 )
         self.query_one("#known", Static).update(text)
 
+    def action_new_model(self) -> None:
+        """Enter the model that was typed."""
+        from tui.screens.new_model import NewModel
+
+        line = self.query_one("#model", Input)
+
+        def done(made: Any) -> None:
+            if made is not None:
+                line.value = made.number
+                self.look_up()
+
+        if self.record is not None:
+            self.app.push_screen(NewModel(line.value.strip()), done)
+
     def action_take(self) -> None:
         """Take the core in."""
+        if self.record is None:
+            self.refuse("the record is still being opened; try again in a moment")
+            return
         values = {name: self.query_one(f"#{name}", Input).value for name, _, _ in FIELDS}
 
         def question() -> Any:

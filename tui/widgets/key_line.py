@@ -1,9 +1,13 @@
-"""The line at the bottom: the keys that work here and now, as many as there is room for; F1 tells of all of them."""
+"""The line at the bottom: the keys that work here and now, as many as there is room for; F1 tells of all of them.
+
+Above them, for a while, what came of the last thing that was asked for.
+"""
 
 from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
+from textwrap import wrap
 from typing import Any
 
 from rich.cells import cell_len
@@ -12,10 +16,14 @@ from rich.style import Style
 from textual import events
 from textual.screen import Screen
 from textual.strip import Strip
+from textual.timer import Timer
 from textual.widget import Widget
+
+from tui.widgets.listing import flat
 
 EXPLAIN = "explain"
 GAP = 2
+SECONDS, LONGEST, MOST_LINES = 12, 600, 4
 _KEYS = {"escape": "Esc", "delete": "Del", "enter": "Enter", "insert": "Ins", "pageup": "PgUp", "pagedown": "PgDn"}
 
 
@@ -61,12 +69,26 @@ class KeyLine(Widget):
     def __init__(self, lines: int = 1) -> None:
         super().__init__()
         self.lines = lines
+        self.said: list[str] = []
+        self.is_loud = False
+        self.until: Timer | None = None
         self.spans: list[tuple[int, int, int, Key]] = []
 
     def on_mount(self) -> None:
         """Follow what works."""
         self.styles.height = self.lines
         self.screen.bindings_updated_signal.subscribe(self, lambda _: self.refresh())
+
+    def say(self, text: str, *, is_loud: bool = False) -> None:
+        """Show a message above the keys; the next one takes its place, and it goes by itself."""
+        self.said = wrap(flat(text)[:LONGEST], max(20, self.size.width - 2))[:MOST_LINES]
+        self.is_loud = is_loud
+        self.styles.height = self.lines + len(self.said)
+        self.refresh()
+        if self.until is not None:
+            self.until.stop()
+        if text:
+            self.until = self.set_timer(SECONDS, lambda: self.say(""))
 
     def fitting(self, room: int) -> list[list[Key]]:
         """Line by line the keys that find room, the one that explains last; where some do not, it promises them all."""
@@ -86,12 +108,16 @@ class KeyLine(Widget):
         tones, width = self.app.theme_variables, self.size.width
         ground = Style(color=tones["quiet"], bgcolor=tones["panel"])
         brass = ground + Style(color=tones["brass"], bold=True)
+        if y < len(self.said):
+            tone = Style(color=tones["loud" if self.is_loud else "foreground"], bold=True)
+            return Strip([Segment(f" {self.said[y]}", ground + tone)]).adjust_cell_length(width, ground)
+        row, y = y, y - len(self.said)
         laid = self.fitting(width - 2)
         segments, at = [Segment(" ", ground)], 1
-        self.spans = [span for span in self.spans if span[0] != y]
+        self.spans = [span for span in self.spans if span[0] != row]
         for key in laid[y] if y < len(laid) else ():
             length = _length(key)
-            self.spans.append((y, at, at + length, key))
+            self.spans.append((row, at, at + length, key))
             segments += [Segment(key.key, brass), Segment(f" {key.words}  ", ground)]
             at += length + GAP
         return Strip(segments).adjust_cell_length(width, ground)

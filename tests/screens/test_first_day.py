@@ -1,0 +1,87 @@
+"""An empty record, as on the first day: everything needed is entered on the screens, and what is wrong is said."""
+
+from __future__ import annotations
+
+from store import jobs, people, records
+from store.records import Record
+from tests.screens.support import opened, settled, text_of
+from tests.screens.test_screens import keys, typed, written
+from tui.app import Wearline
+from tui.screens.standing import Standing
+from tui.widgets.key_line import KeyLine
+
+
+async def test_the_first_core(record: Record) -> None:
+    """From nothing: the model is entered while taking in, the job opens, a test is one key, the limit is entered in place."""
+    record.close()
+    async with opened(record.path) as pilot:
+        assert "F2 takes in a core" in text_of(pilot)
+        await keys(pilot, "f2")
+        await typed(pilot, "X-1")
+        assert "F5 enters it as a new model" in text_of(pilot)
+        await keys(pilot, "ctrl+s")
+        assert "no model 'X-1'" in text_of(pilot).splitlines()[-2]
+        await keys(pilot, "f5")
+        await typed(pilot, "starter")
+        await keys(pilot, "ctrl+s", "enter")
+        await typed(pilot, "77")
+        await keys(pilot, "ctrl+s")
+        assert "X-1 starter  serial 77" in text_of(pilot)
+        await typed(pilot, "p")
+        await written(pilot)
+        assert "pass" in text_of(pilot)
+    again = records.open(record.path)
+    assert [(line.model, line.serial) for line in jobs.listing(again)] == [("X-1", "77")]
+    again.close()
+
+
+async def test_the_first_person(record: Record) -> None:
+    """F4, F2: a person is entered and chosen, and the top line says who works here."""
+    record.close()
+    async with opened(record.path) as pilot:
+        await keys(pilot, "f4", "f2")
+        await typed(pilot, "AB")
+        await keys(pilot, "enter")
+        await typed(pilot, "Ada Birch")
+        await keys(pilot, "ctrl+s", "enter")
+        assert text_of(pilot).splitlines()[0].endswith("AB")
+        assert [p.name for p in people.listing(pilot.app.record)] == ["Ada Birch"]
+
+
+async def test_keys_before_the_record_is_open(record: Record) -> None:
+    """F2 works from the first frame on; what is typed there waits for the record."""
+    record.close()
+    app = Wearline(record.path, debug=True)
+    async with app.run_test(size=(80, 24)) as pilot:
+        await pilot.press("f2")
+        for character in "x1":
+            await pilot.press(character)
+        while app.record is None:
+            await pilot.pause(0.01)
+        await settled(pilot)
+        assert "no model 'x1'" in text_of(pilot)
+
+
+async def test_a_fault_in_the_program_is_said_and_does_not_end_it(record: Record) -> None:
+    """Something unforeseen in a question: one line above the keys, and the screens go on."""
+    record.close()
+    async with opened(record.path) as pilot:
+        pilot.app.shows_faults = False
+        screen: Standing = pilot.app.screen
+        screen.ask("odd", lambda: 1 // 0, lambda answer: None)
+        await settled(pilot)
+        assert "a fault in the program, not in what you did (ZeroDivisionError" in text_of(pilot)
+
+
+async def test_what_is_said_goes_again(record: Record) -> None:
+    """A message takes lines of its own above the keys, whatever it holds; an empty one gives them back."""
+    record.close()
+    async with opened(record.path) as pilot:
+        line = pilot.app.screen.query_one(KeyLine)
+        pilot.app.notify("[/] [b]x " + "word " * 500, severity="error")
+        await settled(pilot)
+        assert line.size.height == line.lines + 4
+        assert "[/] [b]x word" in text_of(pilot)
+        line.say("")
+        await settled(pilot)
+        assert line.size.height == line.lines
