@@ -147,31 +147,6 @@ def checked_relation(
     return (None, of, relation, to, caveat, source, dated)
 
 
-def withdraw(record: Record, relation: int, why: str) -> None:
-    """Take a stated relation back; what it was and why stays in the chain. Raises Refused, NotFound."""
-    people.require_known(record)
-    if not why.strip():
-        raise Refused("say why the statement is taken back")
-    with record.change("relation withdrawn", brief(why, 200)) as change:
-        if not change.delete(RelationRow, relation):
-            raise NotFound("relation", str(relation))
-
-
-def stated_of(record: Record, number: Number) -> tuple[tuple[int, str], ...]:
-    """The key and the words of every relation that is stated of a number or names it, in the order of stating."""
-    from store.parts.answers import name, statement
-
-    sql = (
-        "SELECT id, from_id, relation, to_id, source, caveat, dated FROM relation WHERE from_id = ? OR to_id = ? "
-        "ORDER BY id LIMIT 500"
-    )
-    with record.read() as conn:
-        found = rows(conn, sql, (number.id, number.id))
-        ids = {r[1] for r in found} | {r[3] for r in found if r[3] is not None}
-        named = {one.id: name(one) for one in by_ids(conn, list(ids))}
-    return tuple((r[0], statement(Relation(r[2]), named[r[1]], named.get(r[3], ""), *r[4:])) for r in found)
-
-
 def say_fits(
     record: Record, number: str, model: str, *, maker: str = "", position: str = "", quantity: int | None = None, source: str = ""
 ) -> int:  # fmt: skip

@@ -108,8 +108,9 @@ def part_attributes(conn: Connection, numbers: Sequence[Number]) -> dict[int, di
         "SELECT s.number_id, s.name, s.value || ' ' || s.unit FROM json_each(?) k "
         "CROSS JOIN part_size s ON s.number_id = k.value ORDER BY s.id"
     )
+    kinds = {number.id: number.kind.casefold() for number in numbers}
     for which, name, value in rows(conn, sql, (asked,)):
-        made[which][name] = value
+        made[which][f"brush-{name}" if "brush" in kinds[which] else name] = value
     sql = "SELECT a.number_id, a.name, a.value FROM json_each(?) k CROSS JOIN part_attribute a ON a.number_id = k.value ORDER BY a.id"
     for which, name, value in rows(conn, sql, (asked,)):
         made[which][name] = value

@@ -87,8 +87,6 @@ _MUST = {
     "rotor": ("volts", "rotation"),
     "stator": ("volts",),
     "brush": ("brush-width", "brush-thickness", "terminals"),
-    "bushing": ("bore", "journal"),
-    "bearing": ("bore", "journal"),
 }
 EVERY_MUST = frozenset(name for names in _MUST.values() for name in names)
 _NAMES = {"voltage": "volts", "volt": "volts", "direction": "rotation", "tooth-count": "teeth", "module": "pitch"}
@@ -170,7 +168,19 @@ _CCW = {
 }
 _BOTH = {"both", "either", "reversible"}
 _DRIVE_END = {"drive", "pinion", "pulley", "de"}
-_OTHER_END = {"commutator", "opposite", "rear", "brush", "non", "non-drive", "nde", "anti", "anti-drive", "slip-ring", "back"}
+_OTHER_END = {
+    "commutator",
+    "opposite",
+    "rear",
+    "brush",
+    "non",
+    "non-drive",
+    "nde",
+    "anti",
+    "anti-drive",
+    "slip-ring",
+    "back",
+}
 _TURNED = {"cw": "ccw", "ccw": "cw", "both": "both"}
 
 

@@ -8,7 +8,7 @@ import pytest
 
 from store import jobs, parts
 from store.errors import NotFound, Refused
-from store.parts import by_size, checking, fitting, numbers
+from store.parts import by_size, checking, fitting, numbers, statements
 from store.parts.answers import Check
 from store.records import Record
 from store.rules.attributes import Fits
@@ -303,8 +303,14 @@ def test_entered_and_edited_on_screen(lists: Record) -> None:
     edited = numbers.edit(lists, made, kind="drive", description="nine teeth", status="current")
     assert (edited.description, edited.status) == ("nine teeth", "current")
     with pytest.raises(Refused, match="say why"):
-        numbers.withdraw(lists, relation, "")
-    numbers.withdraw(lists, relation, "tried, does not mesh")
+        statements.withdraw(lists, "relation", relation, "")
+    assert [(s.kind, s.says) for s in statements.stated_of(lists, made)] == [
+        ("relation", "NEW-1 of Fir interchanges with DR-90 of Alder (own bench, 2026-11-02)"),
+        ("fits", "goes on KS-100, drive x1 (own bench)"),
+        ("size", "id 14 mm"),
+        ("attribute", "rotation: cw"),
+    ]
+    statements.withdraw(lists, "relation", relation, "tried, does not mesh")
     assert led_to(checking.check(lists, "DR-90")) == []
 
 
@@ -325,3 +331,26 @@ def test_a_core_is_taken_in_by_any_number_that_leads_to_its_model(lists: Record)
         jobs.take_in(lists, model="KS-10", serial="9")
     with pytest.raises(NotFound, match="no model 'BR-100'"):
         jobs.take_in(lists, model="BR-100", serial="9")
+
+
+def test_a_check_asks_as_often_however_large_the_family(lists: Record) -> None:
+    """Statements are counted: they go by the levels of the walk, not by the numbers in it."""
+    from store.sqlite.engine import driver
+
+    def asked() -> int:
+        seen: list[str] = []
+        with lists.read() as conn:
+            raw = driver(conn)
+        raw.set_trace_callback(seen.append)
+        checking.check(lists, "DR-90")
+        raw.set_trace_callback(None)
+        return len(seen)
+
+    numbers.relate(lists, "DR-90", "interchanges-with", "DR-90L")
+    asked()  # the models are read into memory once
+    before = asked()
+    for n in range(30):
+        numbers.enter(lists, f"EQ-{n}00", "drive")
+        numbers.relate(lists, "DR-90", "interchanges-with", f"EQ-{n}00")
+    assert asked() == before
+    assert before < 25

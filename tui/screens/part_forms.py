@@ -105,32 +105,33 @@ def size(record: Any, number: Any) -> Form:
     return Form(f"A size of {number.number} {number.maker}", lines, keep)
 
 
-def attribute(record: Any, number: Any) -> Form:
-    """State an attribute of a number."""
+def attribute(record: Any, number: Any, model: str = "") -> Form:
+    """State an attribute of a number, or of a model where `model` names one."""
 
     def keep(values: dict[str, str]) -> Any:
         from store.parts import numbers
 
+        if model:
+            return numbers.say_attribute(record, values["name"], values["value"], model=model)
         return numbers.say_attribute(record, values["name"], values["value"], number=number.number, maker=number.maker)
 
     lines = [
         Line("name", "attribute", "rotation, volts, teeth, pitch, pilot ..."),
         Line("value", "value", "ccw from commutator end; 9; module 2.5 ..."),
     ]
-    return Form(
-        f"An attribute of {number.number} {number.maker}",
-        lines,
-        keep,
-        "A rotation is as seen from the drive end unless you say.",
-    )
+    of = model or f"{number.number} {number.maker}"
+    return Form(f"An attribute of {of}", lines, keep, "A rotation is as seen from the drive end unless you say.")
 
 
 class Statements(ModalScreen[Any]):
-    """What lists state of a number; Enter takes a statement back, with a reason."""
+    """Everything that is stated of a number; Enter takes a statement back, with a reason."""
 
     CSS_PATH = "parts.tcss"
     TITLE_WORDS = "Statements"
-    EXPLAINS = "Every relation that a list states of this number. Enter takes one back: it is asked why, and what it was stays in the chain."
+    EXPLAINS = (
+        "Relations, models, sizes and attributes that are stated of this number. Enter takes one back: it is asked why, and "
+        "what it was stays in the chain."
+    )
     BINDINGS: ClassVar[list[BindingType]] = [Binding("escape", "close", "back")]
 
     def __init__(self, record: Any, number: Any) -> None:
@@ -141,30 +142,32 @@ class Statements(ModalScreen[Any]):
         """Title, statements, keys."""
         with Vertical():
             yield Static(f"stated of {self.number.number} {self.number.maker}", markup=False, classes="head")
-            yield Listing([Column("statement", 0)], empty="nothing is stated of it", id="statements")
+            yield Listing(
+                [Column("", 9, quiet=True), Column("statement", 0)], empty="nothing is stated of it", id="statements"
+            )
             yield Static("Enter takes it back   Esc back", markup=False, classes="keys")
 
     def on_mount(self) -> None:
         """Read them."""
-        from store.parts import numbers
+        from store.parts import statements
 
-        said = numbers.stated_of(self.record, self.number)
+        said = statements.stated_of(self.record, self.number)
         listing = self.query_one("#statements", Listing)
-        listing.show([Item((text,), which) for which, text in said])
+        listing.show([Item((one.kind, one.says), one) for one in said])
         listing.focus()
 
     @on(Listing.Chosen)
     def take_back(self, message: Listing.Chosen) -> None:
         """Ask why, then take it back."""
-        which, said = message.item.value, message.item.cells[0]
+        one = message.item.value
 
         def keep(values: dict[str, str]) -> Any:
-            from store.parts import numbers
+            from store.parts import statements
 
-            numbers.withdraw(self.record, which, values["why"])
+            statements.withdraw(self.record, one.kind, one.id, values["why"])
             return True
 
-        self.app.push_screen(Form("Take back", [Line("why", "why")], keep, said), self.taken)
+        self.app.push_screen(Form("Take back", [Line("why", "why")], keep, one.says), self.taken)
 
     def taken(self, done: Any) -> None:
         """Back, with whether one was taken."""

@@ -152,7 +152,7 @@ class Parts(Standing):
 
     def _with_number(self, form: Any, *more: Any) -> None:
         number = self._number()
-        if number is None:
+        if number is None and not any(more):
             self.refuse("no number is under the cursor; F2 enters one")
         else:
             self.app.push_screen(form(self.record, number, *more), lambda done: self.look() if done else None)
@@ -192,15 +192,20 @@ class Parts(Standing):
 
     def action_fits(self) -> None:
         """State what it goes on."""
-        self._with_number(part_forms.fits, self.model)
+        if self._number() is None:
+            self.refuse("no number is under the cursor; F2 enters one")
+        else:
+            self._with_number(part_forms.fits, self.model)
 
     def action_size(self) -> None:
         """State a size."""
         self._with_number(part_forms.size)
 
     def action_attribute(self) -> None:
-        """State an attribute."""
-        self._with_number(part_forms.attribute)
+        """State an attribute of the number, or of the model where it is one."""
+        item = self.query_one("#found", Listing).item
+        candidate = item.value.candidate if item else None
+        self._with_number(part_forms.attribute, candidate.number if candidate and candidate.model else "")
 
     def action_edit(self) -> None:
         """Change what is said of it."""
