@@ -17,6 +17,7 @@ from pathlib import Path
 from typing import Any
 
 from store import audit
+from store.errors import Refused
 from store.records import APPLICATION_ID, HEAD, Record
 from store.sqlite.connections import connect
 
@@ -24,6 +25,7 @@ Progress = Callable[[str, int], None]
 DERIVED = frozenset({"judgement", "text_change"})
 """Tables that are derived and verified by other means, or only say what is to be indexed anew."""
 CHUNK = 5000
+SHORTEST = 16
 
 
 @dataclass(frozen=True, slots=True)
@@ -99,10 +101,14 @@ def verify_file(path: Path, progress: Progress = lambda what, done: None) -> Ver
 def knows(record: Record, head: str) -> tuple[int, str] | None:
     """The entry whose hash a printed head is, and when it was made; None where the chain never had it.
 
-    GENESIS, the head of an empty record, is known to every one as entry 0.
+    The foot of a page prints the first SHORTEST figures; that many or more are enough. Raises Refused for fewer.
     """
+    asked = head.strip().lower()
+    if len(asked) < SHORTEST or not set(asked) <= set("0123456789abcdef"):
+        raise Refused(f"a head is {SHORTEST} to 64 figures and letters a to f, as printed at the foot of a report")
     with record.read() as conn:
-        found = conn.exec_driver_sql("SELECT id, at FROM audit WHERE hash = ?", (head.strip().lower(),)).first()
+        sql = "SELECT id, at FROM audit WHERE hash >= ? AND hash < ? ORDER BY id LIMIT 1"
+        found = conn.exec_driver_sql(sql, (asked, f"{asked}g")).first()
     return None if found is None else (int(found[0]), str(found[1]))
 
 

@@ -15,9 +15,9 @@ from pathlib import Path
 from alembic import command
 from alembic.config import Config
 
-from store import catalogue
+from store import catalogue, judgements, times
 from store.changes import Change
-from store.records import SHOP
+from store.records import SHOP, Record
 from store.sqlite.engine import engine
 
 
@@ -40,6 +40,8 @@ def bring_up(path: Path, version: str | None, at: str) -> None:
             change = Change(conn, at, SHOP, "catalogue shipped", "")
             catalogue.ship(change)
             change.close()
+            if version is not None:  # rules may have moved since: what is derived is judged anew
+                judgements.rebuild_all(Record(path, made, SHOP, times.now), conn)
     finally:
         made.dispose()
 
