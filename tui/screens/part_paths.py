@@ -27,14 +27,7 @@ def drawn(check: Any, tones: dict[str, str]) -> Text:
         text.append(f"\nCONFLICT  {conflict.what}\n", loud)
         for says in conflict.says:
             text.append(f"   {says}\n")
-    for led in check.leads_to:
-        text.append("\n→ ")
-        _named(text, led.number)
-        text.append(f"  {led.trust}", loud if led.trust == "disputed" else Style(bold=True))
-        text.append(f"  {led.evidence.says}\n", quiet)
-        if led.on is not None:
-            text.append(f"   on {led.on.model}: {led.on.says}\n", _verdict_style(led.on, loud))
-        _path(text, led.path, quiet)
+    _tree(text, check, quiet, loud)
     if check.bounded:
         text.append("\nThere is more than this: only the nearest numbers were walked.\n", Style(bold=True))
     if check.followed and not check.leads_to and not check.stopped:
@@ -58,11 +51,47 @@ def _asked(text: Text, check: Any, quiet: Style) -> None:
             text.append(f"  against {a.model or '?'}{'' if a.must else '  need not match'}\n", quiet)
 
 
+def _tree(text: Text, check: Any, quiet: Style, loud: Style) -> None:
+    """Every number led to under the one that it was reached from, so that its path is read from the top down."""
+    known = {_steps(led.path): led for led in check.leads_to}
+    under: dict[Any, list[Any]] = {}
+    for steps, led in known.items():
+        under.setdefault(steps[:-1] if steps[:-1] in known else (), []).append((steps, led))
+    waiting = [(steps, led, 0) for steps, led in reversed(under.get((), ()))]
+    if waiting:
+        text.append("\nleads to\n", Style(bold=True))
+    while waiting:
+        steps, led, depth = waiting.pop()
+        whole = led.path if depth == 0 else led.path[-1:]
+        for n, way in enumerate(whole):
+            indent = "   " + "  " * min(depth + n, 12)
+            text.append(f"{indent}{_ARROWS[way.relation]} ")
+            _named(text, way.end)
+            text.append(f"\n{indent}    {_word(way)}", quiet)
+            if way.caveat:
+                text.append(f"  CAVEAT {way.caveat}", Style(bold=True))
+            if n + 1 < len(whole):
+                text.append("\n")
+        text.append("  ")
+        text.append(led.trust, loud if led.trust == "disputed" else Style(bold=True))
+        text.append(f"  {led.evidence.says}\n", quiet)
+        if led.on is not None:
+            text.append(f"{indent}    on {led.on.model}: {led.on.says}\n", _verdict_style(led.on, loud))
+        waiting += [(more, one, depth + len(whole)) for more, one in reversed(under.get(steps, ()))]
+
+
+def _steps(path: Any) -> tuple[Any, ...]:
+    return tuple((way.start.id, way.end.id, way.relation) for way in path)
+
+
+def _word(way: Any) -> str:
+    return f"{way.source}, {way.dated or 'undated'}" if way.source else "no source"
+
+
 def _path(text: Text, path: Any, quiet: Style) -> None:
     for depth, way in enumerate(path):
         text.append(f"   {'  ' * min(depth, 8)}{way.start.number} {_ARROWS[way.relation]} {way.end.number}")
-        word = f"{way.source}, {way.dated or 'undated'}" if way.source else "no source"
-        text.append(f"   {word}", quiet)
+        text.append(f"   {_word(way)}", quiet)
         if way.caveat:
             text.append(f"   CAVEAT {way.caveat}", Style(bold=True))
         text.append("\n")
