@@ -100,9 +100,7 @@ class JobSheet(Vertical):
         self.version = version
         self.sheet = sheet = job_faces.asked(sheet, every=self.every_row)
         rows = job_faces.rows(sheet, grid.keying.refused() if same else {})
-        grid.show(rows, job_faces.faces(sheet, self.questions), where)
-        if is_through and not any(c.state is State.empty for r in rows if r.is_asked for c in r.cells):
-            grid.keying.at = None
+        grid.show(rows, job_faces.faces(sheet, self.questions), where, is_through=is_through)
         grid.keying.aside, grid.keying.last = aside, last if before == [row.name for row in rows] else []
         self._stand_where_wanted()
         if not same:

@@ -145,6 +145,11 @@ class Keying:
             None if self.at is None else (self.rows[self.at[0]].name, self.rows[self.at[0]].cells[self.at[1]].position)
         )
 
+    @property
+    def is_wanting(self) -> bool:
+        """Whether an asked cell has no reading yet."""
+        return self._first_empty((0, -1)) is not None
+
     def stand(self, where: tuple[str, str]) -> None:
         """Stand on the cell of these names, where there is one."""
         for n, row in enumerate(self.rows):

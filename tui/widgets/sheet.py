@@ -71,11 +71,25 @@ class ReadingSheet(ScrollView, can_focus=True):
         self.line_of: list[int] = []
         self.painted = 0
 
-    def show(self, rows: list[Row], faces: Sequence[Face], where: tuple[str, str] | None = None) -> None:
-        """Show a whole sheet; the cursor goes to the cell named by `where` or to the first asked one without a reading."""
+    def show(
+        self,
+        rows: list[Row],
+        faces: Sequence[Face],
+        where: tuple[str, str] | None = None,
+        *,
+        is_through: bool = False,
+    ) -> None:
+        """Show a whole sheet; the cursor goes to the cell named by `where` or to the first asked one without a reading.
+
+        `is_through`: it had come to the end, and stays there unless something is empty again. Of a sheet with the same
+        lines as before only what differs is painted again.
+        """
+        before, faced, lined = self.keying, self.faces, self.lines
         self.keying = Keying(rows)
         if where is not None:
             self.keying.stand(where)
+        if is_through and not self.keying.is_wanting:
+            self.keying.at = None
         self.faces = list(faces)
         self.lines, self.line_of = [], []
         for n, face in enumerate(faces):
@@ -83,10 +97,19 @@ class ReadingSheet(ScrollView, can_focus=True):
                 self.lines.append((face.group, -1))
             self.line_of.append(len(self.lines))
             self.lines.append(("", n))
-        self.virtual_size = Size(0, len(self.lines))
+        if self.lines == lined:
+            self._repaint(self._differing(before, faced))
+        else:
+            self.virtual_size = Size(0, len(self.lines))
+            self.refresh()
         self._follow()
-        self.refresh()
         self.post_message(self.Moved())
+
+    def _differing(self, before: Keying, faced: Sequence[Face]) -> set[int]:
+        """The rows that are not as they were, and those of the cursor then and now."""
+        pairs = zip(before.rows, self.keying.rows, faced, self.faces, strict=True)
+        differing = {n for n, (was, now, old, new) in enumerate(pairs) if was != now or old != new}
+        return differing | {at[0] for at in (before.at, self.keying.at) if at is not None}
 
     def set_face(self, row: int, face: Face) -> None:
         """Show what a row says now; repaints its line."""
