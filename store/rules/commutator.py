@@ -39,13 +39,16 @@ ORDER = "turn, re-undercut, deburr, polish, measure again"
 
 @dataclass(frozen=True, slots=True)
 class Found:
-    """A commutator as measured and as limited, all sizes in `unit`; None where it is not measured or not limited."""
+    """A commutator as measured and as limited, all sizes in `unit`; None where it is not measured or not limited.
+
+    `surface_failed` with a `defect` of None: something is below the surface, and nobody knows how deep.
+    """
 
     unit: str
     diameter: Fraction | None = None
     runout: Fraction | None = None
     undercut: Fraction | None = None
-    defect: Fraction = Fraction(0)
+    defect: Fraction | None = Fraction(0)
     polish: Fraction = Fraction(0)
     lowest: Fraction | None = None
     lowest_passes: bool = True
@@ -56,6 +59,8 @@ class Found:
     surface_failed: bool = False
     may_turn: bool = True
     may_undercut: bool = True
+    most_runout_passes: bool = True
+    least_undercut_passes: bool = True
 
 
 @dataclass(frozen=True, slots=True)
@@ -161,20 +166,50 @@ def _under(diameter: Fraction, found: Found) -> bool:
 
 def _wants_a_cut(found: Found) -> bool:
     """Nothing is turned that is inside its runout limit and has no surface defect."""
-    if found.defect > 0:
-        return True
-    return found.runout is not None and found.most_runout is not None and found.runout > found.most_runout
+    return bool(found.defect) or _runs_out(found)
+
+
+def _runs_out(found: Found) -> bool:
+    if found.runout is None or found.most_runout is None:
+        return False
+    return found.runout > found.most_runout or (found.runout == found.most_runout and not found.most_runout_passes)
+
+
+def _is_shallow(slot: Fraction, found: Found) -> bool:
+    """Whether a slot is under its limit; without one, whether it is gone."""
+    if found.least_undercut is None:
+        return slot <= 0
+    return (
+        slot < found.least_undercut or (slot == found.least_undercut and not found.least_undercut_passes) or slot <= 0
+    )
+
+
+def _is_depth_unknown(found: Found) -> bool:
+    return found.surface_failed and found.defect is None
 
 
 def _why_cut(found: Found) -> str:
-    if found.runout is not None and found.most_runout is not None and found.runout > found.most_runout:
-        return f"it runs out {plain(found.runout)} over {plain(found.most_runout)} {found.unit}"
-    return f"its surface is damaged {plain(found.defect)} {found.unit} deep"
+    said = []
+    if _runs_out(found):
+        said.append(
+            f"it runs out {plain(found.runout or Fraction(0))} over {plain(found.most_runout or Fraction(0))} {found.unit}"
+        )
+    if found.defect:
+        said.append(f"its surface is damaged {plain(found.defect)} {found.unit} deep")
+    return " and ".join(said)
 
 
 def _without_a_cut(found: Found) -> tuple[Advice, ...]:
     lines = []
-    if found.surface_failed:
+    if _is_depth_unknown(found):
+        lines.append(
+            Advice(
+                Action.polish,
+                "the surface is not clean and the depth of its defect is not measured: measure it first; "
+                "polishing is enough only where it has none",
+            )
+        )
+    elif found.surface_failed:
         predicted = (("commutator-diameter", found.diameter - found.polish),) if found.diameter is not None else ()
         lines.append(
             Advice(
@@ -198,7 +233,7 @@ def _without_a_cut(found: Found) -> tuple[Advice, ...]:
                 "nothing measured calls for a cut; without a runout and its limit nothing more can be said",
             )
         )
-    if found.undercut is not None and found.least_undercut is not None and found.undercut < found.least_undercut:
+    if found.undercut is not None and found.least_undercut is not None and _is_shallow(found.undercut, found):
         lines.append(_undercut(found, found.undercut, f"the shallowest slot is {plain(found.undercut)}"))
     return tuple(lines)
 
@@ -211,9 +246,10 @@ def _less(found: Found) -> str:
 def _with_a_cut(found: Found) -> tuple[Advice, ...]:
     assert found.diameter is not None
     runout = found.runout or Fraction(0)
-    turned = clean_up(found.diameter, runout, found.defect, found.polish)
+    defect = found.defect or Fraction(0)
+    turned = clean_up(found.diameter, runout, defect, found.polish)
     formula = (
-        f"D - r - 2g - p = {plain(found.diameter)} - {plain(runout)} - 2 x {plain(found.defect)} - {plain(found.polish)} = "
+        f"D - r - 2g - p = {plain(found.diameter)} - {plain(runout)} - 2 x {plain(defect)} - {plain(found.polish)} = "
         f"{plain(turned)} {found.unit}"
     )
     predicted = [("commutator-diameter", turned)]
@@ -229,28 +265,42 @@ def _with_a_cut(found: Found) -> tuple[Advice, ...]:
     else:
         left = cuts_left(turned, found.lowest, found.diameter - turned)
         said += f"; {left} more cut{'s' if left != 1 else ''} of this size would remain"
+    if _is_depth_unknown(found):  # the cut may have to go deeper, so no size is predicted
+        said = f"{_why_cut(found)}; the surface defect's depth is not measured and the cut must go below it: measure it first"
+        formula, predicted = f"at most {formula}, less twice the defect", []
     lines = [Advice(action, said, formula, tuple(predicted))]
-    if found.undercut is not None:
-        lines += _after_the_cut(found, turned, runout)
+    if found.undercut is not None and predicted:
+        slots = _after_the_cut(found, turned, runout)
+        if not slots:
+            slot = worst_slot(found.undercut, found.diameter, turned, runout)
+            kept = (*lines[0].predicted, ("undercut-depth", slot))
+            lines[0] = replace(lines[0], formula=f"{formula}; {_slot_formula(found, turned, runout)}", predicted=kept)
+        lines += slots
     lines[0] = replace(lines[0], because=f"{lines[0].because}. Order: {ORDER}")
     return tuple(lines)
 
 
 def _after_the_cut(found: Found, turned: Fraction, runout: Fraction) -> list[Advice]:
+    """The line for the slots, where the worst would be too shallow."""
     assert found.undercut is not None
     assert found.diameter is not None
     slot = worst_slot(found.undercut, found.diameter, turned, runout)
-    formula = (
-        f"u - [(D - D')/2 + r] = {plain(found.undercut)} - [({plain(found.diameter)} - {plain(turned)})/2 + {plain(runout)}] = "
-        f"{plain(slot)} {found.unit}, the bound for any shape"
-    )
-    least = found.least_undercut if found.least_undercut is not None else Fraction(0)
-    if slot >= least and slot > 0:
+    if not _is_shallow(slot, found):
         return []
     said = f"after the cut the worst slot would be {plain(max(slot, Fraction(0)))}"
-    return [
-        replace(_undercut(found, slot, said), formula=formula, predicted=(("undercut-depth", max(slot, Fraction(0))),))
-    ]
+    predicted = (("undercut-depth", max(slot, Fraction(0))),)
+    return [replace(_undercut(found, slot, said), formula=_slot_formula(found, turned, runout), predicted=predicted)]
+
+
+def _slot_formula(found: Found, turned: Fraction, runout: Fraction) -> str:
+    assert found.undercut is not None
+    assert found.diameter is not None
+    slot = worst_slot(found.undercut, found.diameter, turned, runout)
+    round_one = worst_slot_eccentric(found.undercut, found.diameter, turned, runout)
+    return (
+        f"u - [(D - D')/2 + r] = {plain(found.undercut)} - [({plain(found.diameter)} - {plain(turned)})/2 + {plain(runout)}] = "
+        f"{plain(slot)} {found.unit}, the bound for any shape; {plain(round_one)} if it is round and only off its centre"
+    )
 
 
 def _undercut(found: Found, slot: Fraction, said: str) -> Advice:

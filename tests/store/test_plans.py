@@ -102,16 +102,16 @@ def test_accepted_lines_are_done_and_held_against_what_was_left(record: Record, 
     (entry, *_) = plans.accept(record, tag)
     assert plans.accept(record, tag) == plans.listing(record, tag)
     plans.finish(record, tag, entry.id, note="by CN on the small lathe")
-    (held,) = plans.held(record, tag, entry.line)
+    held, *_ = plans.held(record, tag, entry.line)
     assert (held.left, held.beyond) == (None, False)
     readings.add_all(record, tag, [Entry("commutator-diameter", "43.96", "as-left", gauge="MIC-1")] * 4)
-    (held,) = plans.held(record, tag, entry.line)
+    held, *_ = plans.held(record, tag, entry.line)
     assert (held.beyond, "within the gauge's uncertainty" in held.says) == (False, True)
     for place in ("A0", "A90", "B0", "B90"):
         readings.add(
             record, tag, "as-left", "commutator-diameter", "43.90", position=place, gauge="MIC-1", why="cut again"
         )
-    (held,) = plans.held(record, tag, entry.line)
+    held, *_ = plans.held(record, tag, entry.line)
     assert held.beyond
     (line, *_) = gather.draft(record, tag).plan
     assert (line.outcome, "beyond the gauge's uncertainty" in line.note) == ("done", True)
