@@ -16,7 +16,7 @@ from tests.screens.test_screens import keys, typed, written
 from tui.screens.places import PANES, PLACES, load, load_pane
 from tui.screens.standing import Standing
 from tui.widgets.key_line import KeyLine
-from tui.widgets.sheet import ReadingSheet
+from tui.widgets.sheet import CELL, ReadingSheet
 
 
 @pytest.fixture
@@ -144,6 +144,31 @@ async def test_the_wear_rule_stands_before_the_first_reading(path: Path) -> None
         await written(pilot)
         row = next(line for line in text_of(pilot).splitlines() if line.startswith(" brush length "))
         assert "·" in row[row.index("├") : row.index("┃")]
+
+
+async def test_the_mouse_puts_the_cursor_into_a_cell(path: Path) -> None:
+    """A click on a cell is as good as the arrows, and what is typed goes there."""
+    async with opened(path) as pilot:
+        sheet = await at_row(pilot, "brush-length")
+        row = next(n for n, face in enumerate(sheet.faces) if face.label == "commutator diameter")
+        x = sum(sheet.left) + 2 * CELL + 3
+        await pilot.click(ReadingSheet, offset=(x, sheet.line_of[row] - sheet.scroll_offset.y))
+        await typed(pilot, "44.1")
+        await keys(pilot, "enter")
+        await written(pilot)
+        cell = sheet.keying.rows[row].cells[2]
+        assert (cell.text, cell.state.value) == ("44.1", "accepted")
+
+
+@pytest.mark.parametrize("size", [(20, 6), (40, 12), (300, 90)])
+async def test_odd_sizes_break_nothing(path: Path, size: tuple[int, int]) -> None:
+    """Smaller than is usable or larger than any screen: it is drawn, and a reading still goes in."""
+    async with opened(path, size) as pilot:
+        await at_row(pilot, "brush-length")
+        await typed(pilot, "11.2")
+        await keys(pilot, "enter", "f7", "f8", "f1", "escape", "escape", "f2")
+        await settled(pilot)
+        assert [r.typed.text for r in readings.of_job(pilot.app.record, "1001")] == ["11.2"]
 
 
 async def test_revisions_stand_side_by_side(path: Path) -> None:

@@ -15,6 +15,7 @@ from tui.screens.standing import Standing
 from tui.widgets.listing import Column, Item, Listing
 
 LOOK_AGAIN_SECONDS = 0.5
+MOST = 500
 ORDER = ("taken in", "stripped", "on rework", "to inspect", "released", "scrapped", "returned")
 
 
@@ -119,7 +120,7 @@ class Bench(Standing):
             from store import jobs
 
             assert self.record is not None
-            return jobs.listing(self.record, outcome=outcome, search=search), self.record.now()
+            return jobs.listing(self.record, outcome=outcome, search=search, most=MOST), self.record.now()
 
         self.ask("jobs", question, self._show)
 
@@ -129,7 +130,8 @@ class Bench(Standing):
         found = (
             "found" if self.query_one("#search", Input).value.strip() else "on the bench" if not self.with_ended else ""
         )
-        self.query_one("#counts", Static).update(f"{len(lines)} {what}{'' if len(lines) == 1 else 's'} {found}")
+        newest = "the newest " if len(lines) >= MOST else ""
+        self.query_one("#counts", Static).update(f"{newest}{len(lines)} {what}{'' if len(lines) == 1 else 's'} {found}")
         items = []
         for stands in ORDER:
             here = [line for line in lines if line.stands == stands]
