@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import click
 
@@ -10,6 +10,7 @@ from tui.commands.acting import as_json, on_record
 from tui.commands.output import one_line, write_json
 
 if TYPE_CHECKING:
+    from store.plans import ReworkLine
     from store.records import Record
 
 
@@ -23,7 +24,7 @@ if TYPE_CHECKING:
     metavar="LINE",
     help="Take a line into the rework list; may be given again.",
 )
-@click.option("--accept-all", is_flag=True, help="Take every line.")
+@click.option("--accept-all", is_flag=True, help="Take every line that asks for work.")
 @click.option("--done", "done", type=int, metavar="ID", help="A line of the rework list is done.")
 @click.option(
     "--decline", "declined", type=int, metavar="ID", help="A line of the rework list is not done; say --note why."
@@ -44,9 +45,9 @@ def plan(
         plans.finish(record, tag, done, note=note)
     if declined is not None:
         plans.finish(record, tag, declined, outcome="declined", note=note)
-    made = plans.compute(record, tag)
+    made, listed = plans.compute(record, tag), plans.listing(record, tag)
     if as_json:
-        write_json(plans.as_json(made))
+        write_json({**plans.as_json(made), "rework": [_rework(record, tag, entry) for entry in listed]})
         return
     for number, line in enumerate(made.lines, start=1):
         click.echo(f"{number}  {line.component}: {line.action}. {one_line(line.because)}")
@@ -57,8 +58,7 @@ def plan(
     if not made.lines:
         click.echo("nothing to be done by the as-found readings")
     for remark in made.remarks:
-        click.echo(remark)
-    listed = plans.listing(record, tag)
+        click.echo(one_line(remark))
     if listed:
         click.echo("rework list")
     for entry in listed:
@@ -67,3 +67,17 @@ def plan(
         )
         for found in plans.held(record, tag, entry.line):
             click.echo(f"     {found.says}")
+
+
+def _rework(record: Record, tag: str, entry: ReworkLine) -> dict[str, Any]:
+    """One accepted line with what came of it, its predictions held against what was left."""
+    from store import plans
+
+    return {
+        "id": entry.id, "component": entry.line.component, "action": entry.line.action, "outcome": entry.outcome,
+        "note": entry.note, "by": entry.ended_by or entry.by, "at": entry.ended or entry.at,
+        "held": [
+            {"name": h.predicted.name, "beyond": h.beyond, "says": h.says}
+            for h in plans.held(record, tag, entry.line)
+        ],
+    }  # fmt: skip

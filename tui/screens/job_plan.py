@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Any, ClassVar
 
-from textual import events, on
+from textual import on
 from textual.app import ComposeResult
+from textual.binding import Binding, BindingType
 from textual.containers import Vertical
 from textual.widgets import Static
 
@@ -14,12 +15,17 @@ from tui.widgets.listing import Column, Item, Listing
 
 
 class JobPlan(Vertical):
-    """Proposed lines over the rework list. Enter accepts a proposed line, or says that a listed one is done."""
+    """Proposed lines over the rework list, remarks below. Enter accepts a proposed line, or says that a listed one is done."""
 
     DEFAULT_CSS = """
     JobPlan Listing { margin: 0 1; }
-    JobPlan #line { height: 7; padding: 0 1; border-top: solid $hairline; }
+    JobPlan #line { height: auto; min-height: 6; max-height: 12; padding: 0 1; border-top: solid $hairline; }
     """
+    BINDINGS: ClassVar[list[BindingType]] = [
+        Binding(
+            "a", "accept_all", "accept all", tooltip="take every proposed line that asks for work into the rework list"
+        )
+    ]
 
     def __init__(self, *, id: str | None = None) -> None:  # noqa: A002
         super().__init__(id=id)
@@ -55,40 +61,42 @@ class JobPlan(Vertical):
             (n, x) for n, x in enumerate(plan.lines, start=1) if (x.component, x.action, x.because) not in accepted
         ]
         if proposed:
-            items.append(Item(("proposed: Enter accepts a line, a all of them",), heading=True))
+            items.append(Item(("proposed, sizes are predictions: Enter accepts a line, a all of them",), heading=True))
         for number, line in proposed:
-            tone = (
-                "loud"
-                if line.action in {"replace", "not-to-be-turned", "straighten-shaft-first", "turn-last-cut"}
-                else ""
-            )
-            items.append(
-                Item((str(number), line.component, line.action, line.because), ("proposed", number, line, ()), tone)
-            )
+            loud = {"replace", "not-to-be-turned", "straighten-shaft-first", "turn-last-cut"}
+            tone = "loud" if line.action in loud else "" if line.is_work else "quiet"
+            cells = (str(number), line.component, line.action, line.because)
+            items.append(Item(cells, ("proposed", number, line, ()), tone))
         if listed:
             items.append(Item(("rework list: Enter says what came of a line",), heading=True))
         for entry, held in listed:
             tone = "quiet" if entry.outcome != "open" else ""
             tone = "doubt" if any(h.beyond for h in held) else tone
-            cells = (
+            told = (
                 {"declined": "no"}.get(entry.outcome, entry.outcome),
                 entry.line.component,
                 entry.line.action,
                 entry.note or entry.line.because,
             )
-            items.append(Item(cells, ("listed", entry.id, entry.line, held), tone))
+            items.append(Item(told, ("listed", entry.id, entry.line, held), tone))
+        if plan.remarks:
+            items.append(Item(("what else the readings say",), heading=True))
+        items += [
+            Item(("", "", "", remark), ("remark", n, remark, ()), "quiet") for n, remark in enumerate(plan.remarks)
+        ]
         self.query_one(Listing).show(items)
         if not items:
             self.query_one("#line", Static).update("")
-        for remark in plan.remarks:
-            self.query_one("#line", Static).update(remark)
 
     @on(Listing.Moved)
     def moved(self, message: Listing.Moved) -> None:
         """The whole line: why, the formula, what is predicted, and what was left."""
         from store import plans
 
-        _, _, line, held = message.item.value
+        kind, _, line, held = message.item.value
+        if kind == "remark":
+            self.query_one("#line", Static).update(line)
+            return
         text = [line.because]
         if line.formula:
             text.append(line.formula)
@@ -102,6 +110,8 @@ class JobPlan(Vertical):
     def chosen(self, message: Listing.Chosen) -> None:
         """Accept a proposed line; say what came of a listed one."""
         kind, number, line, _ = message.item.value
+        if kind == "remark":
+            return
         if kind == "proposed":
             self._accept([number])
             return
@@ -117,11 +127,9 @@ class JobPlan(Vertical):
         form = Form(f"{line.component}: {line.action}", lines, keep)
         self.app.push_screen(form, lambda done: self.show(self.job_screen) if done else None)
 
-    def on_key(self, event: events.Key) -> None:
-        """a accepts every proposed line."""
-        if event.key == "a":
-            event.stop()
-            self._accept(None)
+    def action_accept_all(self) -> None:
+        """Accept every proposed line that asks for work."""
+        self._accept(None)
 
     def _accept(self, numbers: list[int] | None) -> None:
         screen = self.job_screen
