@@ -178,11 +178,28 @@ def _bearings(conn: Connection, model: Model, found: Sheet) -> Iterator[PlanLine
         worn = [part for part in parts if part is not None and part.verdict is Verdict.out]
         if row.verdict is not Verdict.out and not worn:
             continue
-        yield from _bearing(conn, model, row, place, parts)
+        yield from _bearing(conn, model, row, place, parts, _housing(found))
+
+
+def _housing(found: Sheet) -> Fraction | None:
+    """The housing's bore for a bushing in mm, the largest, where it is measured."""
+    row = _row(found, "bushing-housing-bore")
+    return None if row is None else _value(row, "mm")
+
+
+def _sizes(row: SheetRow | None) -> list[Fraction]:
+    """The readings of a row in mm."""
+    taken = [r.typed for r in row.readings if r is not None] if row is not None else []
+    return [quantities.convert(t.value, t.unit, "mm") for t in taken if t.value is not None]
 
 
 def _bearing(
-    conn: Connection, model: Model, row: SheetRow, place: str, parts: Sequence[SheetRow | None]
+    conn: Connection,
+    model: Model,
+    row: SheetRow,
+    place: str,
+    parts: Sequence[SheetRow | None],
+    housing: Fraction | None,
 ) -> Iterator[PlanLine]:
     said = place.replace("-", " ")
     journal = parts[1]
@@ -198,23 +215,31 @@ def _bearing(
         if parts[0] and parts[0].judged
         else ""
     )
-    size = None if journal is None else _value(journal, "mm")
+    sizes = _sizes(journal)
     exact = row.limit.limit if row.limit else None
-    choice = ""
+    choice, formula = "", "clearance = bore - journal"
     predicted: tuple[Predicted, ...] = ()
-    if size is not None and exact is not None:
-        low, high = (
-            None if end is None else quantities.convert(end, exact.unit, "mm") for end in (exact.low, exact.high)
-        )
-        chosen = bushings.choose(_at_hand(conn, model), size, low, high)
+    if sizes and exact is not None and exact.high is not None:
+        low, high = (None if e is None else quantities.convert(e, exact.unit, "mm") for e in (exact.low, exact.high))
+        chosen = bushings.choose(_at_hand(conn, model), min(sizes), low, high, housing, max(sizes))
         if chosen:
             best = chosen[0]
             clearance = quantities.convert(best.clearance, "mm", exact.unit)
-            choice = f"; {best.bushing.number} {best.bushing.maker} would restore it".replace("  ", " ")
+            also = f" (also {', '.join(c.bushing.number for c in chosen[1:4])})" if chosen[1:] else ""
+            named = f"{best.bushing.number} {best.bushing.maker}".strip()
+            fits = (
+                "its press fit is not checked: the housing is not measured"
+                if housing is None
+                else "it is tight in the housing"
+            )
+            choice = f"; {named} would restore it{also}; {fits}"
+            formula += (
+                f" = {shown(best.bushing.bore)} - {shown(min(sizes))} = {shown(best.clearance)} mm at the loosest"
+            )
             predicted = (Predicted(row.characteristic.name, clearance, exact.unit),)
         else:
             choice = "; no bushing in the lists for this model restores it"
-    yield PlanLine("bearings", "replace-bushing", f"{said}: {fit}{choice}", "clearance = bore - journal", predicted)
+    yield PlanLine("bearings", "replace-bushing", f"{said}: {fit}{choice}", formula, predicted)
 
 
 def _at_hand(conn: Connection, model: Model) -> list[bushings.Bushing]:
@@ -249,9 +274,9 @@ def _rest(found: Sheet) -> Iterator[PlanLine]:
         if row.characteristic.component == "bearings" and name.endswith(("-clearance", "-bore", "-journal")):
             continue
         action = _ACTIONS.get(name, "adjust" if name.startswith("pinion-clearance") else "replace")
-        yield PlanLine(
-            row.characteristic.component, action.replace(" ", "-"), f"{row.characteristic.label}: {row.judged.because}"
-        )
+        said, label = row.judged.because, row.characteristic.label
+        said = said if said.startswith(label) else f"{label}: {said}"
+        yield PlanLine(row.characteristic.component, action.replace(" ", "-"), said)
 
 
 def shown(size: Fraction) -> str:

@@ -42,6 +42,20 @@ def pressure_kpa(force_n: Fraction, area_mm2: Fraction) -> Fraction:
     return force_n / area_mm2 * 1000
 
 
+def force_at(force: Fraction, read_at: Fraction, stated_at: Fraction, lost_per_length: Fraction) -> Fraction:
+    """A positive-gradient spring's force at the stated position, from one read elsewhere; positions are brush lengths.
+
+    It loses `lost_per_length` for each unit of length that the brush is shorter (20 gf a millimetre in TM 10-3930-653-14&P).
+    Raises Refused below zero, or where the spring would not reach the brush.
+    """
+    if force < 0 or lost_per_length < 0:
+        raise Refused("a spring force, and what it loses with wear, is not below zero")
+    made = force - (read_at - stated_at) * lost_per_length
+    if made < 0:
+        raise Refused("at that position the spring would not reach the brush")
+    return made
+
+
 def advise(shortest: Fraction, limit: Fraction, passes: bool, unit: str) -> tuple[str, str]:
     """`replace` or `keep`, and why; `passes` says whether a brush at the limit may stay. All brushes of a set go together."""
     short = shortest < limit or (shortest == limit and not passes)

@@ -19,7 +19,7 @@ class Bushing:
 
 @dataclass(frozen=True, slots=True)
 class Choice:
-    """A bushing that restores the clearance; `clearance` on the journal, `interference` in the housing, None where not measured."""
+    """A bushing that restores the clearance; `clearance` on the smallest journal, `interference` in the housing, None where not measured."""
 
     bushing: Bushing
     clearance: Fraction
@@ -28,16 +28,18 @@ class Choice:
 
 def choose(
     at_hand: Iterable[Bushing], journal: Fraction, low: Fraction | None, high: Fraction | None,
-    housing: Fraction | None = None,
+    housing: Fraction | None = None, widest: Fraction | None = None,
 ) -> tuple[Choice, ...]:  # fmt: skip
     """Those whose clearance on the journal lies within the limits and that press into the housing, the middle ones first.
 
-    `journal` is the smallest diameter of the journal. Empty where none restores the fit.
+    `journal` is the smallest diameter of the journal, against which the high limit holds; `widest` its largest, for the low
+    one. `housing` is the largest bore of the housing. Empty where none restores the fit.
     """
     found = []
     for bushing in at_hand:
         clearance = bushing.bore - journal
-        if (low is not None and clearance < low) or (high is not None and clearance > high) or clearance <= 0:
+        tight = bushing.bore - (journal if widest is None else widest)
+        if (low is not None and tight < low) or (high is not None and clearance > high) or tight <= 0:
             continue
         interference = None if housing is None else bushing.outside - housing
         if interference is not None and interference <= 0:

@@ -14,7 +14,7 @@ from click.testing import CliRunner
 from store import files, jobs, readings, sheets, verdicts
 from store.records import Record
 from store.reports import gather, pdf
-from store.rules import derived
+from store.rules import derived, iso_fits
 from store.rules.limits import Measured
 from store.rules.quantities import Quantity
 from store.rules.readings import parse
@@ -115,3 +115,21 @@ def _clearances(bores: list[str], journals: list[str], unit: str) -> tuple[Fract
 def test_fits_as_printed(bores: list[str], journals: list[str], unit: str, tight: str, loose: str) -> None:
     """The tightest and loosest fit of the printed sizes are those that are printed."""
     assert _clearances(bores, journals, unit) == (Fraction(tight), Fraction(loose))
+
+
+@pytest.mark.parametrize(
+    ("low", "high", "is_hole", "name"),
+    [
+        ("20.000", "20.013", True, "20H6"),
+        ("20.000", "20.021", True, "20H7"),
+        ("19.939", "19.960", False, "20e7"),
+        ("20.035", "20.048", False, "20s6"),
+        ("12.000", "12.018", True, "12H7"),
+        ("11.966", "11.984", False, "12f7"),
+        ("20.000", "20.022", True, ""),
+        ("19.939", "19.960", True, ""),
+    ],
+)
+def test_iso_286_names(low: str, high: str, is_hole: bool, name: str) -> None:
+    """Bhandari, Design of Machine Elements, ch. 3 (20 mm pairs) and ISO 286 (12 mm pairs), in secondary texts; else no name."""
+    assert iso_fits.named(Fraction(low), Fraction(high), is_hole=is_hole) == name

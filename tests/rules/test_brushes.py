@@ -7,7 +7,7 @@ from fractions import Fraction
 import pytest
 
 from store.errors import Refused
-from store.rules.brushes import Point, advise, life_left, pressure_kpa
+from store.rules.brushes import Point, advise, force_at, life_left, pressure_kpa
 from store.rules.bushings import Bushing, choose
 
 F = Fraction
@@ -65,3 +65,22 @@ def test_the_bushing_that_restores_the_fit() -> None:
     assert [c.bushing.number for c in found] == ["B", "A"]
     assert found[0].clearance == F("0.10")
     assert choose(at_hand, F("13.98"), F("0.001"), F("0.002")) == ()
+
+
+def test_an_uneven_journal_is_held_at_both_ends() -> None:
+    """The low limit by the largest of the journal, the high one by the smallest; both sides of each."""
+    one = [Bushing("A", "", F("14.10"), F("18.05"))]
+    assert choose(one, F("13.90"), F("0.02"), F("0.20"), widest=F("14.08")) != ()
+    assert choose(one, F("13.90"), F("0.02"), F("0.20"), widest=F("14.081")) == ()
+    assert choose(one, F("13.899"), F("0.02"), F("0.20"), widest=F("14.08")) == ()
+    assert choose(one, F("13.90"), None, F("0.20"), widest=F("14.10")) == ()
+
+
+def test_spring_force_at_the_stated_position() -> None:
+    """20 gf lost per mm of wear (TM 10-3930-653-14&P, read): 900 gf with a 14 mm brush is 810 gf at 9.5 mm."""
+    assert force_at(F(900), F(14), F("9.5"), F(20)) == 810
+    assert force_at(F(810), F("9.5"), F(14), F(20)) == 900
+    with pytest.raises(Refused, match="would not reach"):
+        force_at(F(80), F(14), F("9.5"), F(20))
+    with pytest.raises(Refused, match="not below zero"):
+        force_at(F(80), F(14), F("9.5"), F(-20))
