@@ -18,6 +18,7 @@ from store.sqlite.faults import unusable
 
 DAYS, MONTHS = 14, 12
 PAGES = 10_000
+MAPPED = 1 << 34
 Progress = Callable[[str, int], None]
 
 
@@ -113,6 +114,7 @@ def _copy(source: Path, target: Path, progress: Progress) -> None:
     try:
         here = sqlite3.connect(f"{source.absolute().as_uri()}?mode=ro", uri=True, timeout=30)
         try:
+            here.execute(f"PRAGMA mmap_size={MAPPED}")
             there = sqlite3.connect(half)
             try:
                 there.execute("PRAGMA synchronous=OFF")  # synced once below, before it gets its name
