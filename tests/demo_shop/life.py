@@ -63,6 +63,7 @@ NOTES = (
     "teeth chamfer gone on two, ring gear to be looked at", "bearing noisy, spun race at the slip ring end", "diode plate replaced, two shorted",
     "regulater cuts in late, replaced", "tag soaked, number read off the {comm} end", "limits from the sheet on the wall, entered as rev 1",
 )  # fmt: skip
+TURNED = frozenset({"commutator-diameter", "slip-ring-diameter"})
 OUTCOMES = ("workmanship", "part", "wear", "system", "installation", "wrong-part", "no-fault", "not-ours")
 
 
@@ -102,6 +103,7 @@ class Shop:
     def __init__(self) -> None:
         self.draw = random.Random(20261127)
         self.books = Books()
+        self.found: dict[tuple[str, str], float] = {}
         self.tag = 1000
         self.serial = 40_000
 
@@ -249,8 +251,21 @@ class Shop:
             if size is None:
                 size = base + draw.gauss(0, abs(line.spread * _span(line)))
                 size = _inside(line, size, visit.outcome, stage, draw)
+            if line.characteristic in TURNED:
+                size = self._turned(visit, line, stage, place, size)
             text, unit = _typed(line, size, visit.model.inch)
             self._write(visit, stage, line, place, text, unit, _gauge(line, visit.model.inch), moment)
+
+    def _turned(self, visit: Visit, line: Line, stage: str, place: str, size: float) -> float:
+        """A size that the lathe makes: as left it is what was found less the cut, or that of another armature or rotor."""
+        key = (visit.tag, line.characteristic)
+        if stage == "as-found":
+            self.found[key] = min(size, self.found.get(key, size))
+            return size
+        cut = 0.06 + 0.04 * (int(visit.tag) % 7)
+        made = self.found.get(key, size) - cut + 0.004 * ["A0", "A90", "B0", "B90"].index(place)
+        floor = (line.low or 0.0) + 0.14 * abs(_span(line))
+        return made if made > floor else size
 
     def _write(
         self, visit: Visit, stage: str, line: Line, place: str, text: str, unit: str, gauge: str, moment: datetime
