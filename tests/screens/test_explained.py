@@ -36,3 +36,14 @@ def test_it_never_takes_more_room(texts: list[tuple[int, str]], width: int, heig
     """Whatever is said: no more lines than there are."""
     drawn = laid_out([Said(rank, text) for rank, text in texts], Size(width, height), TONES)
     assert len(drawn.plain.splitlines()) <= height
+
+
+def test_a_caution_is_read_whole_before_the_first_value() -> None:
+    """Before a job has a reading the caution takes the lines that it needs, even where little room is; then one line."""
+    words = "a series motor runs away: clamp it and guard the pinion"
+    first = [Said(0, "head"), Said(2, "verdict"), Said(5, "source"), Said(1, words, is_whole=True), Said(6, "datum")]
+    lines = laid_out(first, Size(20, 4), TONES).plain.splitlines()
+    assert lines[0] == "head"
+    assert " ".join(lines[1:]) == words
+    after = [Said(0, "head"), Said(2, "verdict"), Said(5, "source"), Said(3, words), Said(6, "datum")]
+    assert len(laid_out(after, Size(20, 4), TONES).plain.splitlines()) == 4

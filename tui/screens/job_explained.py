@@ -37,6 +37,7 @@ class Said:
     text: str
     tone: str = ""
     is_drawing: bool = False
+    is_whole: bool = False
 
 
 def explanation(known: Known, keying: Keying, room: Size, tones: Mapping[str, str]) -> Text:
@@ -100,7 +101,8 @@ def _about(known: Known, row: Any, width: int) -> list[Said]:
     elif not one.derive:
         said.append(Said(5, "no limit is entered for this model: ^l enters one", "quiet"))
     if one.caution:
-        said.append(Said(3, f"CAUTION  {one.caution}", "bold"))
+        is_first = row.judged is None  # before the first value of this job the whole of it is read, whatever the room
+        said.append(Said(1 if is_first else 3, f"CAUTION  {one.caution}", "bold", is_whole=is_first))
     by = f"  By {one.gauge}{'' if one.gauge in known.gauges else ', F4 names which'}." if one.gauge else ""
     said.append(Said(6, f"{one.datum}{by}", "quiet"))
     return said
@@ -122,8 +124,10 @@ def _before(known: Known, row: Any) -> list[str]:
 def laid_out(said: list[Said], room: Size, tones: Mapping[str, str]) -> Text:
     """What is needed most gets a line each, in the order given; lines to spare go to those that need more than one."""
     width, height = max(20, room.width), max(1, room.height)
-    chosen = sorted(sorted(said, key=lambda s: s.rank)[:height], key=said.index)
-    spare = height - len(chosen)
+    whole = {id(one): min(len(wrap(flat(one.text), width)) - 1, max(0, height - 2)) for one in said if one.is_whole}
+    places = max(1 + len(whole), height - sum(whole.values()))
+    chosen = sorted(sorted(said, key=lambda s: s.rank)[:places], key=said.index)
+    spare = max(0, height - len(chosen) - sum(whole.values()))
     text = Text(no_wrap=True, overflow="ellipsis")
     for one in chosen:
         lines = (
@@ -131,8 +135,8 @@ def laid_out(said: list[Said], room: Size, tones: Mapping[str, str]) -> Text:
             if not one.text.startswith(("├", "▸", "─", "╌", "◂"))
             else [one.text]
         )
-        extra = min(spare, len(lines) - 1)
-        spare -= extra
+        extra = whole.get(id(one), min(spare, len(lines) - 1))
+        spare -= 0 if one.is_whole else extra
         kept = lines[: 1 + extra]
         if len(lines) > len(kept):
             kept[-1] = (kept[-1][: width - 1]).rstrip() + "…"
