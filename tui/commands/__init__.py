@@ -23,6 +23,8 @@ COMMANDS = {
     "plan": ("plan", "What to turn, re-undercut, replace, refit; predicted sizes."),
     "limits": ("limits", "Show a model's limit sheet."),
     "parts": ("parts", "Check a number, search by size, fit a part."),
+    "comebacks": ("comebacks", "What returns, how soon, and whether groups differ by more than chance."),
+    "foretell": ("comebacks", "Which as-left readings went with comebacks."),
     "gauges": ("gauges", "Gauges: list, due, calibrate, recall."),
     "report": ("report", "Write or print a tolerance report."),
     "release": ("release", "Release, scrap or return a job; what stands in the way."),
