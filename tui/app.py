@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import threading
 from collections.abc import Callable, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, ClassVar
@@ -60,6 +61,7 @@ class Wearline(App[None]):
         super().__init__()
         self.path, self.acting, self.shows_faults = path, acting, debug
         self.record: Record | None = None
+        self.is_settled = threading.Event()
         self.writer: Writer | None = None
         for theme in THEMES.values():
             self.register_theme(theme)
@@ -112,15 +114,13 @@ class Wearline(App[None]):
     def on_wearline_opened(self, message: Opened) -> None:
         """Start the writer and tell every screen."""
         self.record = message.record
-        self.writer = Writer(message.record, self._written)
+        self.writer = Writer(message.record, lambda answers: self.post_message(self.Written(answers)))
+        self.is_settled.set()
         self.tell_screens("record_opened")
 
     def on_wearline_unopened(self, message: Unopened) -> None:
         """Say why there is no record, on the screen and when the program has left."""
         self.exit(return_code=1, message=f"wearline: {message.why}")
-
-    def _written(self, answers: Sequence[tuple[Order, Any]]) -> None:
-        self.post_message(self.Written(answers))
 
     def on_wearline_written(self, message: Written) -> None:
         """Pass the writer's answers on to the screens that wait for them."""
@@ -191,6 +191,7 @@ class Wearline(App[None]):
 
     def on_unmount(self) -> None:
         """Nothing that was typed is left behind."""
+        self.is_settled.set()
         if self.writer is not None:
             self.writer.close()
         if self.record is not None:

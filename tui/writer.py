@@ -37,7 +37,7 @@ Answer = tuple[Order, "Accepted | WearlineError"]
 class Writer:
     """Takes orders on any thread, answers batches on its own; `answered` is called there and must only pass them on."""
 
-    def __init__(self, record: Record, answered: Callable[[Sequence[Answer]], None]) -> None:
+    def __init__(self, record: Record, answered: Callable[[Sequence[Answer]], object]) -> None:
         self.record, self.answered = record, answered
         self.orders: queue.SimpleQueue[Order | None] = queue.SimpleQueue()
         self.thread = threading.Thread(target=self._run, name="writer", daemon=False)

@@ -2,13 +2,21 @@
 
 from __future__ import annotations
 
-from store import jobs, people, records
+from pathlib import Path
+
+import pytest
+from textual import events
+
+from store import jobs, people, readings, records
 from store.records import Record
-from tests.screens.support import opened, settled, text_of
+from tests import shop
+from tests.screens.support import opened, settled, text_of, until
 from tests.screens.test_screens import keys, typed, written
 from tui.app import Wearline
 from tui.screens.standing import Standing
 from tui.widgets.key_line import KeyLine
+
+NAMED = {"\n": "enter", "\b": "backspace", ".": "full_stop", " ": "space"}
 
 
 async def test_the_first_core(record: Record) -> None:
@@ -60,6 +68,44 @@ async def test_keys_before_the_record_is_open(record: Record) -> None:
             await pilot.pause(0.01)
         await settled(pilot)
         assert "no model 'x1'" in text_of(pilot)
+
+
+async def test_readings_before_the_sheet_is_there(
+    record: Record, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """A job opened and typed into before the record is open: every key is taken in its turn."""
+    shop.fill(record, tmp_path)
+    tag = shop.core(record).tag
+    record.close()
+    app = Wearline(record.path, debug=True)
+    with monkeypatch.context() as held:
+        held.setattr(app, "open_record", lambda: None)
+        async with app.run_test(size=(80, 24)) as pilot:
+            app.go("job", tag)
+            await pilot.pause()
+            for key in "p44.1|44.12|4 4\b\b\b44.09|".replace("|", "\n"):
+                await pilot.press(NAMED.get(key, key))
+            await pilot.press("f2", "f2")
+            held.undo()
+            app.open_record()
+            while app.record is None:
+                await pilot.pause(0.01)
+            await settled(pilot)
+            await written(pilot)
+            texts = [r.typed.text for r in readings.of_job(app.record, tag)]
+    assert texts == ["pass", "44.1", "44.12", "44.09"]
+
+
+async def test_enter_opens_what_was_typed(record: Record, tmp_path: Path) -> None:
+    """A tag and Enter in one burst, as from a scanner: that job opens, not the one that was on top."""
+    shop.fill(record, tmp_path)
+    tags = [shop.core(record, str(n)).tag for n in range(5)]
+    record.close()
+    async with opened(record.path) as pilot:
+        for key in (*tags[0], "enter"):
+            pilot.app.post_message(events.Key(key, None if key == "enter" else key))
+        await until(pilot, lambda: hasattr(pilot.app.screen, "tag"))
+        assert pilot.app.screen.tag == tags[0]
 
 
 async def test_a_fault_in_the_program_is_said_and_does_not_end_it(record: Record) -> None:

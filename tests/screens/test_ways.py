@@ -7,11 +7,12 @@ from pathlib import Path
 from typing import Any
 
 import pytest
+from textual import events
 
 from store import jobs, limit_sheets, readings, records
 from store.records import Record
 from tests import shop
-from tests.screens.support import Terminal, opened, settled, text_of
+from tests.screens.support import Terminal, opened, settled, text_of, until
 from tests.screens.test_screens import keys, typed, written
 from tui.screens.places import PANES, PLACES, load, load_pane
 from tui.screens.standing import Standing
@@ -227,3 +228,42 @@ def test_a_copy_of_the_demo_opens(demo_record_path: Path, tmp_path: Path) -> Non
         screen.until("to inspect")
     finally:
         screen.kill()
+
+
+async def test_keys_right_after_the_stage_changes_go_to_the_new_stage(path: Path) -> None:
+    """F2 in the middle of a burst, nothing awaited: before it as found, after it as left, each in its cell."""
+    async with opened(path) as pilot:
+        await at_row(pilot, "brush-length")
+        sent = [*"11.2", "enter", *"11.3", "f2", "p", *"44.1", "enter", *"44.2", "enter"]
+        for key in sent:
+            pilot.app.post_message(events.Key(key, key if len(key) == 1 else None))
+        await until(pilot, lambda: len(readings.of_job(pilot.app.record, "1001")) == 5)
+        await written(pilot)
+        kept = readings.of_job(pilot.app.record, "1001")
+        found = [(r.characteristic, r.position, r.typed.text) for r in kept if r.stage == "as-found"]
+        left = [r.typed.text for r in kept if r.stage == "as-left"]
+    assert found == [("brush-length", "1", "11.2"), ("brush-length", "2", "11.3")]
+    assert left == ["pass", "44.1", "44.2"]
+
+
+async def test_a_correction_under_way_outlives_what_others_write(path: Path) -> None:
+    """While the reason is being asked another program writes: the question and the new value stay."""
+    async with opened(path) as pilot:
+        sheet = await at_row(pilot, "brush-length")
+        await typed(pilot, "11.2")
+        await keys(pilot, "enter")
+        await written(pilot)
+        await keys(pilot, "left")
+        await typed(pilot, "11.6")
+        await keys(pilot, "enter")
+        other = records.open(path)
+        readings.add(other, "1001", "as-found", "commutator-runout", "0.04")
+        other.close()
+        pilot.app.screen.look_again()
+        await settled(pilot)
+        assert sheet.keying.held == "11.6"
+        await typed(pilot, "wrong brush")
+        await keys(pilot, "enter")
+        await written(pilot)
+        assert "0.04" in text_of(pilot)
+        assert ("11.6", "wrong brush") in [(r.typed.text, r.why) for r in readings.of_job(pilot.app.record, "1001")]

@@ -45,6 +45,8 @@ class Bench(Standing):
         super().__init__()
         self.with_ended = False
         self.version: Any = None
+        self.shown_for: str | None = None
+        self.opens_when_shown = False
 
     def body(self) -> ComposeResult:
         """Search, counts, list."""
@@ -70,7 +72,7 @@ class Bench(Standing):
 
     def first_look(self, lines: Any) -> None:
         """The open jobs, while the rest of the record is still being opened."""
-        self._show((lines, datetime.now(UTC).isoformat()))
+        self._show((lines, datetime.now(UTC).isoformat(), ""))
 
     def record_opened(self) -> None:
         """Fill the list; ask who works here where people are entered and nobody is said."""
@@ -120,12 +122,12 @@ class Bench(Standing):
             from store import jobs
 
             assert self.record is not None
-            return jobs.listing(self.record, outcome=outcome, search=search, most=MOST), self.record.now()
+            return jobs.listing(self.record, outcome=outcome, search=search, most=MOST), self.record.now(), search
 
         self.ask("jobs", question, self._show)
 
     def _show(self, answer: Any) -> None:
-        lines, now = answer
+        lines, now, self.shown_for = answer
         what = "job" if self.with_ended else "open job"
         found = (
             "found" if self.query_one("#search", Input).value.strip() else "on the bench" if not self.with_ended else ""
@@ -140,18 +142,26 @@ class Bench(Standing):
                     Item((f"{stands}  {len(here)}{'   ' + here[0].next if here[0].next else ''}",), heading=True)
                 )
                 items += [_item(line, now) for line in here]
-        self.query_one("#jobs", Listing).show(items)
+        listing = self.query_one("#jobs", Listing)
+        listing.show(items)
+        if self.opens_when_shown and self.shown_for == self.query_one("#search", Input).value:
+            self.opens_when_shown = False
+            listing.choose()
 
     @on(Input.Changed, "#search")
     def search_changed(self) -> None:
         """Search as one types."""
+        self.opens_when_shown = False
         if self.record is not None:
             self.fill()
 
     @on(Input.Submitted, "#search")
     def open_first(self) -> None:
-        """Enter opens the line under the cursor."""
-        self.query_one("#jobs", Listing).choose()
+        """Enter opens the line under the cursor, once the list is that of what was typed."""
+        if self.shown_for == self.query_one("#search", Input).value:
+            self.query_one("#jobs", Listing).choose()
+        else:
+            self.opens_when_shown = True
 
     def on_key(self, event: events.Key) -> None:
         """The arrows move in the list while letters go to the search."""

@@ -57,7 +57,7 @@ class JobSheet(Vertical):
 
     def compose(self) -> ComposeResult:
         """The sheet over the lines that explain it."""
-        yield ReadingSheet(id="sheet")
+        yield ReadingSheet(id="sheet", turning=frozenset({"f2", "ctrl+r"}))
         yield Static("", id="explain", markup=False)
 
     @property
@@ -73,8 +73,7 @@ class JobSheet(Vertical):
     def show(self, screen: Any) -> None:
         """In front again: the keys go to the sheet."""
         self.grid.focus()
-        if screen.record is not None:
-            self.fill()
+        self.fill()
 
     def fill(self) -> None:
         """Read the sheet of the stage anew; the cursor stays where it is."""
@@ -91,7 +90,7 @@ class JobSheet(Vertical):
     def _show(self, answer: Any) -> None:
         stage, sheet, version = answer
         grid = self.grid
-        if self.waiting or grid.keying.buffer or stage != self.stage:
+        if self.waiting or grid.is_busy or stage != self.stage:
             return
         same = self.sheet is not None and self.sheet.stage == stage
         where, is_through = (grid.keying.where, grid.keying.at is None) if same else (None, False)
@@ -101,7 +100,10 @@ class JobSheet(Vertical):
         self.sheet = sheet = job_faces.asked(sheet, every=self.every_row)
         rows = job_faces.rows(sheet, grid.keying.refused() if same else {})
         grid.show(rows, job_faces.faces(sheet, self.questions), where, is_through=is_through)
-        grid.keying.aside, grid.keying.last = aside, last if before == [row.name for row in rows] else []
+        grid.keying.aside, grid.keying.last = (
+            [*aside, *grid.keying.aside],
+            last if before == [row.name for row in rows] else [],
+        )
         self._stand_where_wanted()
         if not same:
             self._look_back()
@@ -119,7 +121,10 @@ class JobSheet(Vertical):
 
     def look_again(self) -> None:
         """Show what another screen wrote, when nothing of ours is under way."""
-        if self.waiting or self.sheet is None:
+        if self.waiting:
+            return
+        if self.sheet is None:
+            self.fill()
             return
         job = self.job
 
@@ -160,6 +165,8 @@ class JobSheet(Vertical):
                 continue
             self.waiting -= 1
             if order.entry.stage != self.stage:
+                if isinstance(answer, WearlineError):
+                    self.job.refuse(f"{order.entry.characteristic} {order.entry.text}, {order.entry.stage}: {answer}")
                 continue
             if isinstance(answer, WearlineError):
                 grid.answered(row, column, State.refused, order.entry.text, str(answer))
@@ -232,13 +239,13 @@ class JobSheet(Vertical):
 
     def action_stage(self) -> None:
         """As found or as left."""
-        self.grid.close_buffer()
+        self.grid.hold()
         self.stage = OTHER[self.stage]
         self.fill()
 
     def action_all_rows(self) -> None:
         """Every row, or only those that are asked for; the cursor begins anew."""
-        self.grid.close_buffer()
+        self.grid.hold()
         self.every_row = not self.every_row
         self.sheet = None
         self.fill()

@@ -104,11 +104,17 @@ class Standing(Screen[Any]):
         self.say_where()
 
     def ask(self, group: str, question: Callable[[], Any], then: Callable[[Any], None]) -> None:
-        """Put a question to the store in a thread; `then` gets the newest answer of its group, on the screen's thread."""
+        """Put a question to the store in a thread; `then` gets the newest answer of its group, on the screen's thread.
+
+        What is asked before the record is open waits for it.
+        """
         self.asked[group] += 1
         number = self.asked[group]
 
         def work() -> None:
+            self.wearline.is_settled.wait()
+            if self.record is None:
+                return
             from store.errors import WearlineError
 
             try:

@@ -6,7 +6,7 @@ the lines that changed are repainted.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import ClassVar
 
@@ -63,13 +63,17 @@ class ReadingSheet(ScrollView, can_focus=True):
     class Moved(Message):
         """The cursor stands elsewhere, or what is being typed has changed."""
 
-    def __init__(self, *, id: str | None = None) -> None:  # noqa: A002
+    def __init__(self, *, id: str | None = None, turning: frozenset[str] = frozenset()) -> None:  # noqa: A002
+        """`turning`: keys that will bring another sheet; from such a key on the others wait for it."""
         super().__init__(id=id)
+        self.turning = turning
         self.keying = Keying([])
         self.faces: list[Face] = []
         self.lines: list[tuple[str, int]] = []
         self.line_of: list[int] = []
         self.painted = 0
+        self.is_held, self.is_turning = True, False
+        self.early: list[Callable[[], list[Submitted]]] = []
 
     def show(
         self,
@@ -102,14 +106,28 @@ class ReadingSheet(ScrollView, can_focus=True):
         else:
             self.virtual_size = Size(0, len(self.lines))
             self.refresh()
-        self._follow()
-        self.post_message(self.Moved())
+        early, self.early, self.is_held = self.early, [], False
+        self._settle([given for key in early for given in key()])
 
     def _differing(self, before: Keying, faced: Sequence[Face]) -> set[int]:
         """The rows that are not as they were, and those of the cursor then and now."""
         pairs = zip(before.rows, self.keying.rows, faced, self.faces, strict=True)
         differing = {n for n, (was, now, old, new) in enumerate(pairs) if was != now or old != new}
         return differing | {at[0] for at in (before.at, self.keying.at) if at is not None}
+
+    def hold(self) -> None:
+        """Another sheet is on its way: what is being typed is closed, and keys wait for that sheet."""
+        self.close_buffer()
+        if self.keying.held:
+            self.keying.aside.append(self.keying.held)
+        self.is_held, self.is_turning = True, False
+
+    @property
+    def is_busy(self) -> bool:
+        """Whether something is being typed or asked, or a key is on its way that will bring another sheet: not to be changed."""
+        return self.is_turning or (
+            not self.is_held and (bool(self.keying.buffer) or self.keying.asking is not Asking.value)
+        )
 
     def set_face(self, row: int, face: Face) -> None:
         """Show what a row says now; repaints its line."""
@@ -147,20 +165,30 @@ class ReadingSheet(ScrollView, can_focus=True):
         if event.key in KEYS:
             if event.key == "escape" and not self.keying.buffer and self.keying.asking is Asking.value:
                 return
-            made = self.keying.press(event.key)
+            self._take(lambda: self.keying.press(event.key))
         elif event.character is not None and event.is_printable:
-            made = self.keying.type(event.character)
+            character = event.character
+            self._take(lambda: self.keying.type(character))
         else:
+            if event.key in self.turning:
+                self.hold()
+                self.is_turning = True
             return
         event.stop()
         event.prevent_default()
-        self._settle(made)
 
     def on_paste(self, event: events.Paste) -> None:
         """A paste is typed, every line of it."""
         event.stop()
         event.prevent_default()
-        self._settle(self.keying.paste(event.text))
+        self._take(lambda: self.keying.paste(event.text))
+
+    def _take(self, key: Callable[[], list[Submitted]]) -> None:
+        """Take a key now, or in its turn as soon as there is a sheet."""
+        if not self.is_held:
+            self._settle(key())
+        else:
+            self.early.append(key)
 
     def on_click(self, event: events.Click) -> None:
         """A click puts the cursor into a cell."""
@@ -197,9 +225,9 @@ class ReadingSheet(ScrollView, can_focus=True):
             return
         line, top, height = self.line_of[at[0]], self.scroll_offset.y, self.size.height
         if line - 1 < top:
-            self.scroll_to(y=max(0, line - 1), animate=False, immediate=True)
+            self.scroll_to(y=max(0, line - 1), animate=False, immediate=True, force=True)
         elif line >= top + height:
-            self.scroll_to(y=line - height + 1, animate=False, immediate=True)
+            self.scroll_to(y=line - height + 1, animate=False, immediate=True, force=True)
 
     def on_resize(self) -> None:
         """The cursor stays in sight when the terminal changes."""
