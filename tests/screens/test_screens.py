@@ -100,6 +100,8 @@ async def test_a_refused_value_stays_with_its_reason(path: Path) -> None:
         sheet = pilot.app.screen.query_one(ReadingSheet)
         cell = sheet.keying.rows[1].cells[0]
         assert (cell.text, cell.state.value) == ("1,234", "refused")
+        assert "1,234: " in text_of(pilot)
+        assert "may be 1.234 or 1234" in text_of(pilot)
         sheet.keying.go(1, 0)
         await keys(pilot, "right", "left")
         assert "may be 1.234 or 1234" in text_of(pilot)

@@ -267,3 +267,13 @@ async def test_a_correction_under_way_outlives_what_others_write(path: Path) -> 
         await written(pilot)
         assert "0.04" in text_of(pilot)
         assert ("11.6", "wrong brush") in [(r.typed.text, r.why) for r in readings.of_job(pilot.app.record, "1001")]
+
+
+async def test_a_refusal_after_the_job_was_left_is_said(path: Path) -> None:
+    """A value that cannot be taken, and Esc before it is answered: the bench says what was refused and why."""
+    async with opened(path) as pilot:
+        await at_row(pilot, "brush-length")
+        for key in [*"1,234", "enter", "escape"]:
+            pilot.app.post_message(events.Key(key, key if len(key) == 1 else None))
+        await until(pilot, lambda: "brush-length 1,234" in text_of(pilot))
+        assert text_of(pilot).startswith(" Wearline  Bench")

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from datetime import UTC, datetime
-from typing import Any, ClassVar
+from typing import TYPE_CHECKING, Any, ClassVar
 
 from textual import events, on
 from textual.app import ComposeResult
@@ -13,6 +14,9 @@ from textual.widgets import Input, Static
 from tui.screens.places import PLACES
 from tui.screens.standing import Standing
 from tui.widgets.listing import Column, Item, Listing
+
+if TYPE_CHECKING:
+    from tui.writer import Order
 
 LOOK_AGAIN_SECONDS = 0.5
 MOST = 500
@@ -89,6 +93,15 @@ class Bench(Standing):
     def _must_say_who(self, people: int) -> None:
         if people and self.record is not None and self.record.by == "shop":
             self.action_who()
+
+    def written(self, answers: Sequence[tuple[Order, Any]]) -> None:
+        """A value that was refused after its job was left: said here, as there is no cell any more that could hold it."""
+        from store.errors import WearlineError
+
+        for order, answer in answers:
+            token: Any = order.token
+            if isinstance(answer, WearlineError) and not token[0].is_attached:
+                self.refuse(f"{order.tag}, {order.entry.characteristic} {order.entry.text}: {answer}")
 
     def look_again(self) -> None:
         """Fill the list anew when the record has changed, by this program or another."""

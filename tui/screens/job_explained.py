@@ -57,6 +57,7 @@ def explanation(known: Known, keying: Keying, room: Size, tones: Mapping[str, st
     cell = cells[keying.at[1]]
     place = f", {row.characteristic.noun} {cell.position}" if len(cells) > 1 else ""
     said.append(_head(known, keying, cell, row, f"{row.characteristic.label}{place}"))
+    said += _refused_elsewhere(known, keying)
     question = known.questions.get((known.sheet.stage, row.characteristic.name, cell.position))
     if question:
         said.append(Said(1, f"?  {question}  ^y it is right; or type over it", "doubt"))
@@ -77,6 +78,16 @@ def _head(known: Known, keying: Keying, cell: Cell, row: Any, name: str) -> Said
     hint = "   p pass  f fail  c cannot judge" if is_test else f"   with {gauge}" if gauge else ""
     asked = sum(which[0] == known.sheet.stage for which in known.questions)
     return Said(0, f"{name}{hint}{f'   ? {asked} to look at again, ^y' if asked else ''}", "bold")
+
+
+def _refused_elsewhere(known: Known, keying: Keying) -> list[Said]:
+    """The first value that was refused in another cell than the one under the cursor, with the reason."""
+    for n, row in enumerate(keying.rows):
+        for column, cell in enumerate(row.cells):
+            if cell.state is State.refused and (n, column) != keying.at:
+                label = known.sheet.rows[n].characteristic.label
+                return [Said(1, f"!  {label} {cell.position}, {cell.text}: {cell.why}", "loud")]
+    return []
 
 
 def _about(known: Known, row: Any, width: int) -> list[Said]:
@@ -150,4 +161,4 @@ def _style(tone: str, tones: Mapping[str, str]) -> Style:
         return Style(color=tones["brass-ink"], bgcolor=tones["brass"], bold=True)
     if tone == "bold":
         return Style(bold=True)
-    return Style(color=tones[tone], bold=tone == "doubt" or None) if tone else NULL_STYLE
+    return Style(color=tones[tone], bold=tone in {"doubt", "loud"} or None) if tone else NULL_STYLE
