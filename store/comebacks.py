@@ -211,7 +211,7 @@ def _groups(by: str, members: dict[str, list[int]], seen: _Seen, rate: float) ->
         back = sum(seen.returned[n] for n in places)
         if back >= FEWEST_COMEBACKS and len(places) >= FEWEST_RELEASES and len(places) < len(seen.ids):
             tested.append((name, pooled.log_rank(places)))
-    adjusted, named = survival.rejected([found.p for _, found in tested], rate)
+    adjusted, named = survival.rejected([found.cautious for _, found in tested], rate)
     results = {name: (found, a, is_named) for (name, found), a, is_named in zip(tested, adjusted, named, strict=True)}
     made = [_group(by, name, places, seen, results.get(name), len(tested)) for name, places in members.items()]
     return tuple(sorted(made, key=lambda g: (g.adjusted is None, g.adjusted or 0.0, -g.comebacks, g.name)))
@@ -232,7 +232,7 @@ def _group(
     found, adjusted, named = result
     more_or_less = "more" if found.observed > found.expected else "less"
     if named:
-        odds = f"1 of {1 / found.p:,.0f}" if found.p > RAREST else f"fewer than 1 of {1 / RAREST:,.0f}"
+        odds = f"1 of {1 / found.cautious:,.0f}" if found.cautious > RAREST else f"fewer than 1 of {1 / RAREST:,.0f}"
         says = (
             f"{more_or_less} than the rest, {found.observed:.0f} where {found.expected:.1f} would be like the rest; "
             f"would be chance in {odds} looks"
@@ -242,7 +242,7 @@ def _group(
             f"no difference that chance would not make: {found.observed:.0f} came back, {found.expected:.1f} like the rest, "
             f"among {looks} looked at"
         )
-    return Group(by, name, len(places), back, share, low, high, found.p, adjusted, named, says, tags)
+    return Group(by, name, len(places), back, share, low, high, found.cautious, adjusted, named, says, tags)
 
 
 def _repeats(seen: _Seen) -> tuple[Mean, ...]:

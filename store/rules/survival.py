@@ -60,12 +60,17 @@ def fraction_at(steps: Sequence[Step], day: float, longest: float) -> tuple[floa
 
 @dataclass(frozen=True, slots=True)
 class LogRank:
-    """Observed and expected returns of the group, the statistic (chi-square, one degree of freedom) and p."""
+    """Observed and expected returns of the group, the statistic (chi-square, one degree of freedom) and its p.
+
+    `cautious` is the larger of p and the mid-p of so many returns where a Poisson count of the expected is due: with few
+    returns the chi-square's tail is too thin, and groups by the hundred would be named by chance more often than said.
+    """
 
     observed: float
     expected: float
     statistic: float
     p: float
+    cautious: float
 
 
 class Pooled:
@@ -86,7 +91,7 @@ class Pooled:
         times, events = self.days[members], self.returned[members]
         observed = float(events.sum())
         if not len(self.at) or not len(times) or len(times) == len(self.days):
-            return LogRank(observed, observed, 0.0, 1.0)
+            return LogRank(observed, observed, 0.0, 1.0, 1.0)
         ours = len(times) - np.searchsorted(np.sort(times), self.at, side="left")
         share = ours / self.risk
         expected = float((self.count * share).sum())
@@ -94,7 +99,19 @@ class Pooled:
             (self.count * share * (1 - share) * (self.risk - self.count) / np.maximum(self.risk - 1, 1)).sum()
         )
         statistic = 0.0 if variance <= 0 else (observed - expected) ** 2 / variance
-        return LogRank(observed, expected, statistic, float(chdtrc(1, statistic)))
+        p = float(chdtrc(1, statistic))
+        return LogRank(observed, expected, statistic, p, max(p, _mid_p(observed, expected)))
+
+
+def _mid_p(observed: float, expected: float) -> float:
+    """Two-sided mid-p of a Poisson count (Lancaster 1961); 1 where nothing was expected."""
+    from scipy.special import pdtr
+
+    if expected <= 0:
+        return 1.0
+    below, upto = (float(pdtr(observed - 1, expected)) if observed >= 1 else 0.0), float(pdtr(observed, expected))
+    lower = (below + upto) / 2
+    return min(1.0, 2 * min(lower, 1 - lower))
 
 
 def rejected(p: Sequence[float], rate: float) -> tuple[tuple[float, ...], tuple[bool, ...]]:

@@ -99,7 +99,7 @@ def simulated(seed: int, jobs: int = 20_000, groups: int = 200, bad: int = 200) 
     fails = draw.exponential(1 / hazard)
     days, returned = np.minimum(fails, age), fails <= age
     pooled = Pooled(days, returned)
-    p = [pooled.log_rank(lot == n).p for n in range(groups + 1)]
+    p = [pooled.log_rank(lot == n).cautious for n in range(groups + 1)]
     _, named = rejected(p, 0.1)
     false = sum(named[1:])
     return float(named[0]), false / max(1, sum(named))
