@@ -47,7 +47,17 @@ class Gauge:
     note: str
     retired: bool
     calibrations: tuple[Calibration, ...]
-    certainty: Certainty
+    certainties: tuple[Certainty, ...]
+
+    @property
+    def certainty(self) -> Certainty:
+        """How sure its readings are by the newest calibration."""
+        return self.certainties[-1]
+
+    def certainty_at(self, at: str) -> Certainty:
+        """How sure its readings are by the calibration in force on the day of `at` (see `calibration_at`)."""
+        used = self.calibration_at(at)
+        return self.certainties[0 if used is None else self.calibrations.index(used)]
 
     @property
     def calibration(self) -> Calibration | None:
@@ -124,13 +134,15 @@ def _read(conn: Connection) -> dict[str, Gauge]:
 
 
 def _gauge(r: Any, calibrations: tuple[Calibration, ...]) -> Gauge:
-    last = calibrations[-1] if calibrations else None
-    sure = Certainty(
-        resolution=_number(r.resolution),
-        expanded=_number(last.expanded_uncertainty if last else None),
-        k=_number(last.k if last else None),
-        repeatability=_number(r.repeatability),
-        unit=r.unit,
+    sure = tuple(
+        Certainty(
+            resolution=_number(r.resolution),
+            expanded=_number(one.expanded_uncertainty if one else None),
+            k=_number(one.k if one else None),
+            repeatability=_number(r.repeatability),
+            unit=r.unit,
+        )
+        for one in (calibrations or (None,))
     )
     return Gauge(
         r.id, r.name, r.kind, r.unit, r.resolution, r.repeatability, r.note, bool(r.retired), calibrations, sure
@@ -195,8 +207,12 @@ def calibrate(
     """Enter a calibration of a gauge. Raises Refused, NotFound."""
     gauge = find(record, name)
     on = calibrated or record.now()[:10]
+    from store import judgements
+
     with record.change("gauge calibrated", gauge.name) as change:
         calibrate_in(change, gauge.id, gauge.name, gauge.unit, expanded_uncertainty, k, on, due, result, note)
+        record.forget(change.conn, "gauges")
+        judgements.rebuild_by_gauge(record, change.conn, gauge.id)
     return find(record, name)
 
 

@@ -23,7 +23,7 @@ from store.rules.limits import Judgement, Limit, Measured, because, from_kept, j
 from store.rules.readings import Mark, Typed
 from store.sqlite.engine import driver, rows
 
-Sure = dict[tuple[int, str], tuple[Fraction | None, Fraction | None]]
+Sure = dict[tuple[int, str, str], tuple[Fraction | None, Fraction | None]]
 
 
 class Judgeable(Protocol):
@@ -55,7 +55,7 @@ class Judged:
 
 
 _CURRENT = """
-SELECT r.characteristic_id, r.position, r.typed, r.mark, r.value, r.unit, r.places, r.detail, r.gauge_id
+SELECT r.characteristic_id, r.position, r.typed, r.mark, r.value, r.unit, r.places, r.detail, r.gauge_id, substr(r.at, 1, 10)
 FROM reading r WHERE r.job_id = ? AND r.stage = ? AND r.characteristic_id IN ({})
 AND NOT EXISTS (SELECT 1 FROM reading c WHERE c.corrects_id = r.id) ORDER BY r.id
 """
@@ -118,6 +118,17 @@ def rebuild_all(record: Record, conn: Connection) -> int:
     return count
 
 
+def rebuild_by_gauge(record: Record, conn: Connection, gauge_id: int) -> int:
+    """Judge anew every job with a reading by this gauge, inside a write transaction; returns how many."""
+    known, owned = catalogue(record, conn), gauges.by_id(record, conn)
+    before: Known = {}
+    touched = rows(conn, "SELECT DISTINCT job_id FROM reading WHERE gauge_id = ?", (gauge_id,))
+    for (job_id,) in touched:
+        driver(conn).execute("DELETE FROM judgement WHERE job_id = ?", (job_id,))
+        driver(conn).executemany(_PUT, _all_of(record, conn, known, owned, job_id, before).values())
+    return len(touched)
+
+
 def compare(record: Record, job_ids: Sequence[int]) -> tuple[int, tuple[str, str] | None]:
     """Judge jobs anew and hold it against what is kept: how many judgements stand, and the first that does not."""
     stand = 0
@@ -141,8 +152,8 @@ def compare(record: Record, job_ids: Sequence[int]) -> tuple[int, tuple[str, str
 
 
 _EVERY = (
-    "SELECT r.characteristic_id, r.position, r.typed, r.mark, r.value, r.unit, r.places, r.detail, r.gauge_id, r.stage, "
-    "r.id, r.corrects_id FROM reading r WHERE r.job_id = ? ORDER BY r.id"
+    "SELECT r.characteristic_id, r.position, r.typed, r.mark, r.value, r.unit, r.places, r.detail, r.gauge_id, "
+    "substr(r.at, 1, 10), r.stage, r.id, r.corrects_id FROM reading r WHERE r.job_id = ? ORDER BY r.id"
 )
 _KIND = (
     "SELECT m.kind, j.revision_id FROM job j JOIN unit u ON u.id = j.unit_id JOIN model m ON m.id = u.model_id "
@@ -164,13 +175,13 @@ def _all_of(
     found = rows(conn, _EVERY, (job_id,))
     if not found:
         return {}
-    corrected = {r[11] for r in found if r[11] is not None}
+    corrected = {r[12] for r in found if r[12] is not None}
     kind, revision_id = rows(conn, _KIND, (job_id,))[0]
     sheet = None if revision_id is None else limit_sheets.by_revision(record, conn, revision_id)
     by_stage: dict[str, dict[str, list[Any]]] = {}
     for r in found:
-        if r[10] not in corrected:
-            by_stage.setdefault(r[9], {}).setdefault(known.by_id[r[0]].name, []).append(r[:9])
+        if r[11] not in corrected:
+            by_stage.setdefault(r[10], {}).setdefault(known.by_id[r[0]].name, []).append(r[:10])
     made = {}
     for stage, taken in by_stage.items():
         for one in _with_derived(known, taken, kind, sheet, stage):
@@ -293,17 +304,17 @@ def _measured(
 
 
 def measured(r: Sequence[Any], owned: dict[int, Gauge], sure: Sure) -> Measured:
-    """A reading's row (position, typed, mark, value, unit, places, detail, gauge_id from its second column) for judging.
+    """A reading's row (position, typed, mark, value, unit, places, detail, gauge_id, day from its second column) for judging.
 
-    `sure` keeps variance and expanded uncertainty by gauge and unit from row to row.
+    `sure` keeps variance and expanded uncertainty by gauge, unit and day from row to row.
     """
     gauge_id = r[8]
     variance = expanded = None
     if r[4] is None:
         return Measured(r[1], Typed(r[2], Mark(r[3]), None, r[5], r[6], r[7]))
     if gauge_id is not None:
-        known = sure.get((gauge_id, r[5]))
+        known = sure.get((gauge_id, r[5], r[9]))
         if known is None:
-            known = sure[(gauge_id, r[5])] = certainty.of_reading(owned[gauge_id].certainty, r[5])
+            known = sure[(gauge_id, r[5], r[9])] = certainty.of_reading(owned[gauge_id].certainty_at(r[9]), r[5])
         variance, expanded = known
     return Measured(r[1], Typed(r[2], Mark.number, quantities.kept(r[4]), r[5], r[6], r[7]), variance, expanded)

@@ -12,6 +12,7 @@ from store.errors import NotFound, ReadingRefused, Refused
 from store.readings import Accepted, Entry
 from store.records import Record
 from tests import shop
+from tests.conftest import Clock
 
 
 @pytest.fixture
@@ -201,3 +202,22 @@ def test_an_ended_job_takes_no_reading(record: Record, tag: str) -> None:
         change.update(JobRow, jobs.find(record, tag).id, outcome="scrapped", ended="2026-11-02")
     with pytest.raises(Refused, match="was scrapped"):
         readings.add(record, tag, "as-found", "growler-short", "pass")
+
+
+def test_a_new_calibration_speaks_for_what_is_read_from_then_on(record: Record, tag: str, clock: Clock) -> None:
+    """Readings are as sure as the calibration in force on their day; verify agrees before and after."""
+    from store import gauges, verify
+
+    readings.add_all(
+        record, tag, [Entry("brush-length", text, gauge="CAL-1") for text in ("11.4", "11.2", "11.5", "9.52")]
+    )
+    before = sheets.sheet(record, tag, "as-found").row("brush-length").verdict.value
+    clock.move(days=30)
+    gauges.calibrate(record, "CAL-1", expanded_uncertainty="0.002", due="2027-12-01")
+    assert sheets.sheet(record, tag, "as-found").row("brush-length").verdict.value == before == "in doubt"
+    later = shop.core(record, "99").tag
+    readings.add_all(
+        record, later, [Entry("brush-length", text, gauge="CAL-1") for text in ("11.4", "11.2", "11.5", "9.52")]
+    )
+    assert sheets.sheet(record, later, "as-found").row("brush-length").verdict.value == "in"
+    assert verify.verify(record).wrong is None
