@@ -68,7 +68,7 @@ def _head(known: Known, keying: Keying, cell: Cell, row: Any, name: str) -> Said
     one = row.characteristic
     if keying.asking is not Asking.value:
         held = f" {cell.text} to {keying.held}" if keying.held else ""
-        return Said(0, f"{name}{held}: {keying.asking.value}? {keying.buffer}▏  Enter  Esc", "asking")
+        return Said(0, f"{name}{held}: {keying.asking.value}? {keying.buffer}▏  Enter keeps it, Esc drops it", "asking")
     if cell.state is State.refused:
         return Said(0, f"!  {name}: {cell.why}", "asking")
     if len(keying.buffer) > 6:
