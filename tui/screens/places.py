@@ -30,6 +30,13 @@ PLACES = {
     "parts": Place(
         "tui.screens.parts", "Parts", "Parts", "which number, on whose word, and does it go on this unit", "f6"
     ),
+    "comebacks": Place(
+        "tui.screens.comebacks",
+        "Comebacks",
+        "Comebacks",
+        "what returns, of which group, and whether that is chance",
+        "f8",
+    ),
     "gauges": Place("tui.screens.gauges", "Gauges", "Gauges", "due dates, uncertainty, recall", "f9"),
     "notes": Place("tui.screens.notes", "Notes", "Notes", "find any note again, slips and all", "f7"),
     "release": Place("tui.screens.release", "Release", "Release", "what stands in the way, and the signature", "f10"),
