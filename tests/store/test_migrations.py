@@ -39,7 +39,10 @@ def test_a_record_of_an_earlier_version_comes_up(tmp_path: Path, version: str) -
         assert conn.exec_driver_sql("SELECT version_num FROM alembic_version").scalar() == records.HEAD
         assert conn.exec_driver_sql("SELECT value FROM setting").scalar() == "older shop"
         assert int(conn.exec_driver_sql("SELECT count(*) FROM characteristic").scalar() or 0) > 100
-        kept = {(r[0], r[1]): r[2] for r in conn.exec_driver_sql("SELECT type, name, sql FROM sqlite_master WHERE sql NOT NULL")}
+        kept = {
+            (r[0], r[1]): r[2]
+            for r in conn.exec_driver_sql("SELECT type, name, sql FROM sqlite_master WHERE sql NOT NULL")
+        }
     record.close()
     assert kept == migrations.schema()
     backup = path.with_name(f"old.wearline.before-{version}")
