@@ -2,7 +2,8 @@
 
 Planted: a chain of four supersessions, a loop, two lists that contradict each other, a substitute in the middle of a chain,
 an overhaul kit, drives of twins whose numbers differ by one letter, a drive that is known to crack, a customer's own numbers
-for whole units, an inch brush a hair under a metric one.
+for whole units, inch brushes and bushings
+a hair apart from metric ones.
 """
 
 from __future__ import annotations
@@ -53,7 +54,11 @@ def numbers() -> Iterable[Row]:
         ("77-0310", "brush set", OTHER, "", ""), ("77-0110", "brush set", OTHER, "", ""), ("BX-31", "brush set", OTHER, "longer lead", ""),
         ("BX-32", "brush set", OTHER, "", ""), ("5-1140", "drive", OTHER, "", ""), ("KT-110R", "kit", OWN, "overhaul kit for KS-110R", ""),
         ("SL-1", "solenoid", OTHER, "", ""), ("SL-2", "solenoid", OTHER, "", ""), ("SL-3", "solenoid", OTHER, "", ""),
-        ("BZ-240", "bushing", OTHER, "drive end", ""), ("HD-4001-7", "starter", "", "Hallow Dairy's own number", ""),
+        ("BZ-240", "bushing", OTHER, "drive end", ""),
+        ("BX-50", "brush set", OTHER, "metric", ""), ("BX-51", "brush set", OTHER, "inch: 1/2 by 1/4", ""),
+        ("BZ-125", "bushing", OTHER, "metric, porous bronze, not to be reamed", ""),
+        ("BZ-126", "bushing", OTHER, "inch, porous bronze, not to be reamed", ""),
+        ("HD-4001-7", "starter", "", "Hallow Dairy's own number", ""),
         ("HD-4002-5", "starter", "", "Hallow Dairy's own number", ""), ("MQ 24 0931", "starter", "", "on the plate of quarry loaders", ""),
     )  # fmt: skip
 
@@ -125,6 +130,12 @@ def sizes() -> Iterable[Row]:
                 yield (number, "od", *_size(bore + 4.05, inch), OWN)
     for name, mm in (("width", 14.0), ("thickness", 6.0), ("length", 15.5)):
         yield ("BX-31", name, f"{mm:g}", "mm", OTHER)
+    for name, metric, inch_size in (("width", "12.5", "0.5"), ("thickness", "6.3", "0.25"), ("length", "16", "0.625")):
+        yield ("BX-50", name, metric, "mm", OTHER)
+        yield ("BX-51", name, inch_size, "in", OTHER)
+    for name, metric, inch_size in (("id", "12.5", "0.5"), ("od", "16", "0.625")):
+        yield ("BZ-125", name, metric, "mm", OTHER)
+        yield ("BZ-126", name, inch_size, "in", OTHER)
 
 
 def _size(mm: float, inch: bool) -> tuple[str, str]:

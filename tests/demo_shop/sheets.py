@@ -166,7 +166,7 @@ def _starter(m: Model) -> tuple[Line, ...]:
         Line("end-play", "mm", None, 0.1, 0.6, 2, "DI-1", 0.5, 0.2, lengths=True),
         Line("clutch-free", "", None, None, None, 0, ""),
         Line("pinion-clearance-to-stop", "mm", None, 0.5, 3.0, 2, "FEE-1", 0.5, 0.2, lengths=True),
-        Line("solenoid-hold-in-current", "A", None, round(8 / half, 1), round(14 / half, 1), 1, "AMM-1", 0.5, 0.15),
+        Line("solenoid-hold-in-current", "A", None, round(8 / half, 1), round(14 / half, 1), 1, "AMM-2", 0.5, 0.15),
         Line("insulation-resistance", "Mohm", None, 1.0, None, 1, "INS-1", 0.4, 0.3),
         Line("no-load-voltage", "V", None, m.volts * 0.92, m.volts * 1.0, 1, "VOL-1", 0.5, 0.1, stage="as-left"),
         Line("no-load-current", "A", None, None, round(90 * s / half), 0, "AMM-1", 0.8, 0.06, stage="as-left"),
@@ -180,7 +180,7 @@ def _generator(m: Model) -> tuple[Line, ...]:
         *_commutator(m, round(42 * s, 1)),
         *_brushes(m),
         Line("field-ground", "", None, None, None, 0, ""),
-        Line("field-current", "A", None, round(1.4 / half, 2), round(2.0 / half, 2), 2, "AMM-1", 0.5, 0.1),
+        Line("field-current", "A", None, round(1.4 / half, 2), round(2.0 / half, 2), 2, "AMM-2", 0.5, 0.1),
         Line("bearing-feel", "", None, None, None, 0, ""),
         Line("insulation-resistance", "Mohm", None, 1.0, None, 1, "INS-1", 0.4, 0.3),
         Line(
@@ -243,7 +243,7 @@ TESTS = {
 }
 DERIVED = {"drive-end-clearance", "commutator-end-clearance"}
 GAUGES = (
-    ("CAL-1", "caliper", "mm", "0.01", "0.03", "2", "2026-03-10", "2027-03-10", ""),
+    ("CAL-1", "caliper", "in", "0.0005", "0.001", "2", "2026-03-10", "2027-03-10", "inch sheets"),
     ("CAL-2", "caliper", "mm", "0.01", "0.03", "2", "2026-03-10", "2027-03-10", "bench 2"),
     ("MIC-25", "outside micrometer", "mm", "0.001", "0.002", "2", "2026-02-02", "2027-02-02", ""),
     (
@@ -263,10 +263,31 @@ GAUGES = (
     ("DEP-1", "depth micrometer with blade", "mm", "0.01", "0.02", "2", "2026-02-02", "2027-02-02", ""),
     ("BOR-1", "bore gauge", "mm", "0.001", "0.004", "2", "2026-02-02", "2027-02-02", ""),
     ("FEE-1", "feelers", "mm", "0.05", "", "", "", "", ""),
-    ("SPR-1", "spring scale", "N", "0.1", "0.3", "2", "2026-06-01", "2027-06-01", "dropped in November, to be checked"),
+    (
+        "SPR-1",
+        "spring scale",
+        "N",
+        "0.1",
+        "0.3",
+        "2",
+        "2026-06-01",
+        "2027-06-01",
+        "fell; found 0.9 N high on 2026-11-20, out of use",
+    ),
+    ("DI-3", "dial indicator", "in", "0.0005", "0.0004", "2", "2026-05-20", "2027-05-20", "inch sheets"),
+    ("DI-4", "test indicator", "in", "0.0001", "0.0001", "2", "2026-05-20", "2027-05-20", "inch sheets"),
+    ("DEP-2", "depth micrometer with blade", "in", "0.0005", "0.0008", "2", "2026-02-02", "2027-02-02", "inch sheets"),
+    ("BOR-2", "bore gauge", "in", "0.0001", "0.0002", "2", "2026-02-02", "2027-02-02", "inch sheets"),
+    ("AMM-2", "ammeter", "A", "0.01", "0.03", "2", "2026-01-15", "2027-01-15", "windings"),
+    ("VOL-2", "millivoltmeter", "mV", "0.1", "0.3", "2", "2026-01-15", "2027-01-15", "bar to bar"),
     ("AMM-1", "ammeter and shunt", "A", "1", "1", "2", "2026-01-15", "2027-01-15", ""),
     ("VOL-1", "voltmeter", "V", "0.01", "0.03", "2", "2026-01-15", "2027-01-15", ""),
     ("TAC-1", "tachometer", "rpm", "1", "15", "2", "2026-01-15", "2027-01-15", ""),
     ("INS-1", "insulation tester", "Mohm", "0.1", "0.2", "2", "2026-01-15", "2027-01-15", ""),
     ("OHM-1", "ohmmeter", "ohm", "0.01", "0.03", "2", "2026-01-15", "2027-01-15", ""),
 )
+INCH_GAUGES = {
+    "CAL-2": "CAL-1", "MIC-25": "MIC-1", "MIC-50": "MIC-1", "DI-1": "DI-3", "DI-2": "DI-4", "DEP-1": "DEP-2", "BOR-1": "BOR-2",
+    "FEE-1": "CAL-1",
+}  # fmt: skip
+STEPS = {gauge: float(resolution) for gauge, _, _, resolution, *_ in GAUGES}

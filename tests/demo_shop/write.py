@@ -61,6 +61,22 @@ def _limits() -> Iterable[tuple[object, ...]]:
         if not model.limits:
             continue
         rule = "simple" if model.number == "KA-285" else ""
+        if model.number == "KS-240":
+            source = f"own limit, Hollow Lane sheet {number}, edition 2, page 3"
+            yield (
+                model.number,
+                "bar-to-bar",
+                "as-found",
+                "%",
+                "",
+                "",
+                "8",
+                "pass",
+                model.bars,
+                rule,
+                source,
+                "deviation from the median",
+            )
         for line in sheet(model):
             unit, new, low, high = _sizes(line, model.inch)
             at_limit = "fail" if line.characteristic == "brush-spring-force" else "pass"
