@@ -13,13 +13,14 @@ from store.errors import NotFound, Refused, brief
 from store.job_lines import JobLine
 from store.nearest import nearest
 from store.records import Record
-from store.rules.numbers import comparing_key
+from store.rules.numbers import comparing_key, folded_key
 from store.sqlite.engine import driver
 from store.tables.jobs import JobRow
 
 OUTCOMES = ("open", "released", "scrapped", "returned")
 COMEBACK_OUTCOMES = ("workmanship", "part", "wear", "system", "installation", "wrong-part", "no-fault", "not-ours")
 MOST_TEXT = 10_000
+FEWEST_TO_COMPARE = 4
 
 
 @dataclass(frozen=True, slots=True)
@@ -127,6 +128,30 @@ def of_unit(record: Record, model: str, serial: str) -> tuple[Job, ...]:
             _JOB + "WHERE u.model_id = ? AND u.key = ? ORDER BY j.taken_in DESC, j.id DESC", (found.id, key)
         ).all()
     return tuple(map(_job, rows))
+
+
+def alike(record: Record, model: str, serial: str, most: int = 5) -> tuple[str, ...]:
+    """Serials of this model that look like one never seen: look-alike characters, or one slip. Raises NotFound.
+
+    A proposal for whoever takes the core in; nothing is linked by it.
+    """
+    found = models.find(record, model)
+    asked = comparing_key(serial)
+    if not asked:
+        return ()
+    from rapidfuzz.distance import OSA
+
+    folded = folded_key(asked)
+    with record.read() as conn:
+        known = conn.exec_driver_sql("SELECT serial, key FROM unit WHERE model_id = ?", (found.id,)).all()
+    if any(key == asked for _, key in known):
+        return ()
+    near = []
+    for text, key in known:
+        slips = OSA.distance(folded_key(key), folded, score_cutoff=1)
+        if slips <= 1 and len(asked) >= FEWEST_TO_COMPARE:
+            near.append((slips, text))
+    return tuple(text for _, text in sorted(near)[:most])
 
 
 def take_in(

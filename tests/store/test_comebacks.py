@@ -177,3 +177,35 @@ def test_by_command(demo: Record, tmp_path: Path) -> None:
     )
     assert out.read_text().startswith("by,name,released,comebacks")
     assert run.invoke(cli, ["foretell", "--record", path], catch_exceptions=False).exit_code == 0
+
+
+def test_words_set_the_notes_of_comebacks_apart(record: Record, tmp_path: Path) -> None:
+    """A word that stands in the notes of comebacks and hardly elsewhere comes first, with its counts."""
+    from store import notes
+
+    history(
+        record,
+        tmp_path,
+        [*(released(n) for n in range(1, 7)), "C1,S1,2026-02-01,open,,R1,part", "C2,S2,2026-02-01,open,,R2,part"],
+    )
+    for tag in ("C1", "C2"):
+        notes.add(record, tag, "contacts pitted again, replaced")
+    for n in range(1, 7):
+        notes.add(record, f"R{n}", "brushes replaced, turned")
+    found = comebacks.words(record, until="2026-11-01")
+    assert {w.word for w in found[:3]} >= {"contacts", "pitted"}
+    (contacts,) = [w for w in found if w.word == "contacts"]
+    assert (contacts.back, contacts.of_back, contacts.other, contacts.of_other) == (2, 2, 0, 6)
+    assert "replaced" not in {w.word for w in found}
+
+
+def test_look_alike_serials_are_proposed(record: Record, tmp_path: Path) -> None:
+    """A serial never seen that looks like a known one is proposed, not linked."""
+    from store import jobs
+
+    shop.fill(record, tmp_path)
+    shop.core(record, "8821B3")
+    assert jobs.alike(record, "KS-100", "882183") == ("8821B3",)
+    assert jobs.alike(record, "KS-100", "88213") == ("8821B3",)
+    assert jobs.alike(record, "KS-100", "8821B3") == ()
+    assert jobs.alike(record, "KS-100", "777777") == ()

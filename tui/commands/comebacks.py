@@ -48,6 +48,11 @@ def comebacks(
 
     found = store_comebacks.review(record, by=by, since=since, until=until, counted=counted or None, rate=rate)
     whole = store_comebacks.as_json(found)
+    if as_json or out is not None:
+        fields = ("word", "back", "of_back", "other", "of_other")
+        whole["words"] = [
+            {name: getattr(w, name) for name in fields} for w in store_comebacks.words(record, until=until)
+        ]
     if out is not None:
         path = Path(out)
         if path.suffix == ".json":
@@ -93,6 +98,10 @@ def comebacks(
         )
     for remark in found.remarks:
         click.echo(remark)
+    apart = store_comebacks.words(record, until=until)
+    if apart:
+        said = ", ".join(f"{w.word} {w.back}/{w.of_back} against {w.other}/{w.of_other}" for w in apart[:8])
+        click.echo(f"words that set their notes apart: {said}")
 
 
 @click.command(epilog="Example: wearline foretell")

@@ -89,7 +89,10 @@ class TakeIn(Standing):
                 meant = parts.model_meant(self.record, model)
             except NotFound as fault:
                 return str(fault)
-            return meant, jobs.of_unit(self.record, meant.model.number, serial) if serial.strip() else ()
+            if not serial.strip():
+                return meant, (), ()
+            number = meant.model.number
+            return meant, jobs.of_unit(self.record, number, serial), jobs.alike(self.record, number, serial)
 
         self.ask("known", question, self._show)
 
@@ -100,7 +103,7 @@ class TakeIn(Standing):
         if isinstance(answer, str):
             text.append(f"{answer}. F5 enters it as a new model.")
         elif answer is not None:
-            meant, earlier = answer
+            meant, earlier, alike = answer
             model = meant.model
             for step in meant.says:
                 text.append(f"{step}\n", style="italic")
@@ -109,6 +112,8 @@ class TakeIn(Standing):
             for job in earlier:
                 text.append(f"{job.tag}  {times.local(job.taken_in)[:10]}  {job.outcome}", style="bold")
                 text.append(f"  {times.local(job.ended)[:10] if job.ended else ''}  {job.complaint}\n")
+            if alike:
+                text.append(f"never seen here; is it one of these, misread? {'  '.join(alike)}\n", style="italic")
             if any(job.outcome == "released" for job in earlier):
                 text.append(
                     "This unit was released before: the new job will be a comeback of its last release.", style="bold"

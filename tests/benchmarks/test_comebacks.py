@@ -1,0 +1,64 @@
+"""The review of what comes back, by the length of the history: 100,000 jobs in 2 s, foretelling in 5, under 1 GiB."""
+
+from __future__ import annotations
+
+import os
+import resource
+import sqlite3
+import time
+from pathlib import Path
+
+import pytest
+
+from store import comebacks, records
+from tests.benchmarks.big_record import make
+from tests.benchmarks.measure import note
+
+FULL = os.environ.get("WEARLINE_FULL") == "1"
+COUNTS = (1_000, 10_000, 100_000) if FULL else (1_000, 3_000)
+
+
+@pytest.mark.parametrize("jobs", COUNTS)
+def test_review_and_foretell(tmp_path: Path, jobs: int) -> None:
+    """After imports; every fifth release came back, in forty groups of lots."""
+    path = tmp_path / "big.wearline"
+    make(path, jobs, tmp_path)
+    raw = sqlite3.connect(path)
+    raw.execute(
+        "UPDATE job SET earlier_id = id - 1, taken_in = date(ended, '+' || (id % 300 + 1) || ' days') WHERE id % 5 = 0 AND id > 1"
+    )
+    columns = "job_id,number,key,maker,lot,supplier,position,quantity,by,at,checked,why"
+    raw.execute(
+        f"INSERT INTO fitted({columns}) SELECT id,'BS','BS','','L'||(id % 40),'W','',1,'','2026-01-02','','' FROM job"
+    )
+    raw.commit()
+    raw.close()
+    record = records.open(path)
+    comebacks.review(record, by="model", until="2027-06-01")
+    begun = time.perf_counter()
+    found = comebacks.review(record, by="lot", until="2027-06-01")
+    review = time.perf_counter() - begun
+    begun = time.perf_counter()
+    comebacks.foretell(record, until="2027-06-01")
+    foretell = time.perf_counter() - begun
+    record.close()
+    memory = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024
+    note(
+        f"review of {jobs:,} jobs, {found.comebacks:,} comebacks, {len(found.groups)} groups",
+        review,
+        "",
+        2,
+        review / 2,
+        "2 s at 100,000",
+    )
+    note(
+        f"foretell of {jobs:,} jobs, {jobs * 20:,} readings ({memory:.0f} MiB)",
+        foretell,
+        "",
+        5,
+        foretell / 5,
+        "5 s at 100,000",
+    )
+    assert review <= 2 * max(0.25, jobs / 100_000)
+    assert foretell <= 5 * max(0.25, jobs / 100_000)
+    assert memory < 1024
