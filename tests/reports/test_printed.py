@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 from io import BytesIO
 from pathlib import Path
+from typing import Any
 
 import pypdf
 import pytest
@@ -69,10 +70,12 @@ def test_marks_of_pdf_a(record: Record, released: str) -> None:
     xml = metadata.stream.get_data().decode()
     assert "pdfaid:part" in xml
     for page in reader.pages:
-        for font in page["/Resources"].get("/Font", {}).values():
+        resources: Any = page["/Resources"]
+        for font in resources.get("/Font", {}).values():
             inner = font.get_object()["/DescendantFonts"][0].get_object()
             assert any(key in inner["/FontDescriptor"].get_object() for key in ("/FontFile2", "/FontFile3"))
-    (spec,) = [entry.get_object() for entry in reader.trailer["/Root"]["/AF"]]
+    root: Any = reader.trailer["/Root"]
+    (spec,) = [entry.get_object() for entry in root["/AF"]]
     assert spec["/AFRelationship"] == "/Data"
 
 

@@ -14,7 +14,7 @@ import pytest
 from store import people, releases
 from store.errors import Refused
 from store.records import Record
-from store.reports import issue, printing
+from store.reports import issue
 from tests import shop as small
 from tests.store.test_releases import GOOD, measure
 
@@ -96,7 +96,7 @@ def test_without_a_printer_it_is_said_and_the_file_named(
     record: Record, released: list[str], tmp_path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
     """No `lp`: one line that says so and where the report is."""
-    monkeypatch.setattr(printing.shutil, "which", lambda name: None)
+    monkeypatch.setattr("store.reports.printing.shutil.which", lambda name: None)
     with pytest.raises(Refused, match="has no `lp` to print with; the report is saved as") as caught:
         issue.print_out(record, released[0], folder=tmp_path)
     assert (tmp_path / "WL-000001.pdf").exists()

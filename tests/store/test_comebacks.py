@@ -84,7 +84,7 @@ def test_bad_questions_are_refused(record: Record) -> None:
         {"counted": ("bad luck",)},
     ):
         with pytest.raises(Refused):
-            comebacks.review(record, **words)  # type: ignore[arg-type]
+            comebacks.review(record, **words)
 
 
 def simulated(seed: int, jobs: int = 20_000, groups: int = 200, bad: int = 200) -> tuple[float, float]:
