@@ -6,6 +6,7 @@ The Job screen draws it, the report prints it, `wearline judge` writes it out; n
 from __future__ import annotations
 
 from collections import Counter
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 from sqlalchemy import Connection
@@ -77,11 +78,16 @@ def sheet(record: Record, tag: str, stage: str, conn: Connection | None = None) 
         with record.read() as own:
             return sheet(record, tag, stage, own)
     job = jobs.find(record, tag, conn)
+    return of_job(record, conn, job, stage, readings.of_job_in(record, conn, job.id))
+
+
+def of_job(record: Record, conn: Connection, job: Job, stage: str, taken: Iterable[Reading]) -> Sheet:
+    """`sheet` inside a running transaction; `taken` are the readings of the job that stand, of both stages."""
     model = models.by_id(conn, job.model_id)
     limits = None if job.revision_id is None else limit_sheets.by_revision(record, conn, job.revision_id)
     standing: dict[str, dict[str, Reading]] = {}
     elsewhere: dict[str, list[Reading]] = {}
-    for reading in readings.of_job_in(record, conn, job.id):
+    for reading in taken:
         if reading.stage == stage:
             standing.setdefault(reading.characteristic, {})[reading.position] = reading
         else:
@@ -94,12 +100,12 @@ def sheet(record: Record, tag: str, stage: str, conn: Connection | None = None) 
         if stage not in one.stages:
             continue
         limit = limits.at(one.name, stage) if limits else None
-        taken = standing.get(one.name, {})
+        by_place = standing.get(one.name, {})
         places = () if one.derive else readings.positions(one, limit, model.bars)
-        places = (*places, *(p for p in taken if p not in places))
+        places = (*places, *(p for p in by_place if p not in places))
         rows.append(
             SheetRow(
-                one, limit, places, tuple(taken.get(p) for p in places), verdicts.get(one.name),
+                one, limit, places, tuple(by_place.get(p) for p in places), verdicts.get(one.name),
                 tuple(elsewhere.get(one.name, ())),
             )
         )  # fmt: skip

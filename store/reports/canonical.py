@@ -18,6 +18,8 @@ from typing import Any, Union, get_args, get_origin, get_type_hints
 from store.errors import Refused
 from store.reports.contents import STAGES, VERDICTS, Characteristic, Report, Result
 
+_PLAIN = frozenset({str, int, float, bool, type(None)})
+
 
 def to_json(report: Report) -> str:
     """The canonical text, ending in a newline. Raises Refused for text that is no Unicode and for NaN or infinity."""
@@ -84,12 +86,12 @@ def _verdict(one: Characteristic, result: Result) -> dict[str, Any]:
 
 
 def _out(value: Any) -> Any:
-    kind = type(value)
+    kind: Any = type(value)
+    if kind in _PLAIN or isinstance(value, str):
+        return value
     if kind is tuple:
         return [_out(item) for item in value]
-    if is_dataclass(kind):
-        return {name: _out(getattr(value, name)) for name in _hints(kind)[0]}
-    return value
+    return {name: _out(getattr(value, name)) for name in _hints(kind)[0]}
 
 
 def _in(kind: Any, value: Any, where: str) -> Any:

@@ -9,7 +9,7 @@ from math import sqrt
 from sqlalchemy import Connection
 
 from store import gauges, jobs, limit_sheets, models, plans, readings, sheets, shop, verdicts
-from store.catalogue import Characteristic, catalogue
+from store.catalogue import Catalogue, catalogue
 from store.errors import Refused
 from store.jobs import Job
 from store.readings import Reading
@@ -48,8 +48,10 @@ def draft(record: Record, tag: str) -> contents.Report:
 def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
     """A job's report inside a running transaction, as a draft. Raises NotFound."""
     job = jobs.find(record, tag, conn)
-    found, left = (sheets.sheet(record, job.tag, stage, conn) for stage in contents.STAGES)
-    taken = readings.of_job_in(record, conn, job.id)
+    ever = {r.id: r for r in readings.of_job_in(record, conn, job.id, corrected=True)}
+    replaced = {r.corrects for r in ever.values()}
+    taken = [r for r in ever.values() if r.id not in replaced]
+    found, left = (sheets.of_job(record, conn, job, stage, taken) for stage in contents.STAGES)
     names = dict(rows(conn, "SELECT initials, name FROM person"))
     sheet = None if job.revision_id is None else limit_sheets.by_revision(record, conn, job.revision_id)
     moments = sorted(r.at for r in taken)
@@ -74,7 +76,7 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         decision=None
         if sheet is None
         else contents.Decision(sheet.revision.decision.value, RULES[sheet.revision.decision]),
-        characteristics=tuple(_characteristics(record, conn, job, found, left)),
+        characteristics=tuple(_characteristics(catalogue(record, conn), job, ever, found, left)),
         findings=_findings(conn, job),
         concessions=_concessions(conn, job, names),
         plan=_plan(record, conn, job),
@@ -170,16 +172,15 @@ def _gauges(record: Record, conn: Connection, taken: Iterable[Reading]) -> tuple
 
 
 def _characteristics(
-    record: Record, conn: Connection, job: Job, found: Sheet, left: Sheet
+    known: Catalogue, job: Job, ever: dict[int, Reading], found: Sheet, left: Sheet
 ) -> Iterable[contents.Characteristic]:
-    corrected = _corrected(record, conn, job)
     by_stage = {sheet.stage: {row.characteristic.name: row for row in sheet.rows} for sheet in (found, left)}
     order = {row.characteristic.name: row for sheet in (left, found) for row in sheet.rows}
-    place = {c.name: n for n, c in enumerate(_in_order(record, conn))}
+    place = {c.name: n for n, c in enumerate(known.all)}
     for name in sorted(order, key=place.__getitem__):
         one = order[name].characteristic
         results = tuple(
-            _result(job, stage, row, corrected)
+            _result(job, stage, row, ever)
             for stage, sheet in by_stage.items()
             if (row := sheet.get(name)) is not None and row.is_expected
         )
@@ -190,11 +191,7 @@ def _characteristics(
             )  # fmt: skip
 
 
-def _in_order(record: Record, conn: Connection) -> Sequence[Characteristic]:
-    return catalogue(record, conn).all
-
-
-def _result(job: Job, stage: str, row: SheetRow, corrected: dict[int, Reading]) -> contents.Result:
+def _result(job: Job, stage: str, row: SheetRow, ever: dict[int, Reading]) -> contents.Result:
     said = verdicts.of_row(row)
     judgement = row.judged.judgement if row.judged else None
     limit = row.limit
@@ -221,7 +218,7 @@ def _result(job: Job, stage: str, row: SheetRow, corrected: dict[int, Reading]) 
         wear_used=said["wear_used"],
         uncertainty=uncertainty,
         limit=None if limit is None else _limit(job, row),
-        readings=tuple(_reading(r, unit, exact, corrected) for r in row.readings if r is not None),
+        readings=tuple(_reading(r, unit, exact, ever) for r in row.readings if r is not None),
         wear_rule=_wear_rule(row, exact),
     )
 
@@ -248,7 +245,7 @@ def limit_text(low: str | None, high: str | None, unit: str) -> str:
     return f"{high} {unit} max" if high is not None else "pass"
 
 
-def _reading(r: Reading, unit: str, exact: Limit | None, corrected: dict[int, Reading]) -> contents.Reading:
+def _reading(r: Reading, unit: str, exact: Limit | None, ever: dict[int, Reading]) -> contents.Reading:
     typed = r.typed
     shown, shown_unit = typed.mark.value, ""
     if typed.mark is Mark.number and typed.value is not None:
@@ -270,22 +267,18 @@ def _reading(r: Reading, unit: str, exact: Limit | None, corrected: dict[int, Re
         at=r.at,
         by=r.by,
         note=r.note,
-        replaced=_replaced(r, corrected),
+        replaced=_replaced(r, ever),
     )
 
 
-def _replaced(r: Reading, corrected: dict[int, Reading]) -> tuple[contents.Replaced, ...]:
+def _replaced(r: Reading, ever: dict[int, Reading]) -> tuple[contents.Replaced, ...]:
     chain: list[contents.Replaced] = []
     why, which = r.why, r.corrects
     while which is not None:
-        before = corrected[which]
+        before = ever[which]
         chain.append(contents.Replaced(f"{before.typed.text}", before.by, before.at, why))
         why, which = before.why, before.corrects
     return tuple(reversed(chain))
-
-
-def _corrected(record: Record, conn: Connection, job: Job) -> dict[int, Reading]:
-    return {r.id: r for r in readings.of_job_in(record, conn, job.id, corrected=True)}
 
 
 def _wear_rule(row: SheetRow, exact: Limit | None) -> contents.WearRule | None:

@@ -196,11 +196,11 @@ def shown(value: Fraction, places: int, apart_from: Sequence[Fraction] = ()) -> 
 
     A value that is equal to one of them is shown equal. Twelve decimals at the most.
     """
+    sides = [_side(value, other) for other in apart_from]
     for digits in range(places, 13):
-        text = rounded(value, digits)
-        seen = Fraction(text)
-        if all(_side(seen, other) == _side(value, other) for other in apart_from):
-            return text
+        seen = Fraction(round(value * 10**digits), 10**digits)
+        if all(_side(seen, other) == side for other, side in zip(apart_from, sides, strict=True)):
+            return rounded(value, digits)
     return plain(value)
 
 

@@ -14,8 +14,8 @@ from math import sqrt
 
 from store.rules.limits import Limit, Rule
 
-NEW_AT, LIMIT_AT = 0.05, 0.80
-LOW_AT, HIGH_AT = 0.18, 0.82
+NEW_AT, LIMIT_AT = Fraction(1, 20), Fraction(4, 5)
+LOW_AT, HIGH_AT = Fraction(9, 50), Fraction(41, 50)
 _WIDTH = {Rule.simple: 0.0, Rule.guarded_165u: 1.65, Rule.guarded_u: 2.0}
 
 
@@ -49,7 +49,7 @@ def wear_rule(
     """
     low, high = limit.low, limit.high
     if low is not None and high is not None:
-        zero, one = _line(low, LOW_AT, high, HIGH_AT) if low != high else _line(low - 1, 0.0, high + 1, 1.0)
+        zero, one = _line(low, LOW_AT, high, HIGH_AT) if low != high else (low - 1, high + 1)
     elif low is not None:
         zero, one = _one_sided(low, limit.new, max(values, default=None), falls=True)
     elif high is not None:
@@ -58,10 +58,12 @@ def wear_rule(
     else:
         return None
 
-    def at(value: Fraction) -> float:
-        return float((value - zero) / (one - zero))
+    whole = one - zero
 
-    width = _WIDTH[limit.rule] * sqrt(float(variance)) / abs(float(one - zero)) if variance is not None else 0.0
+    def at(value: Fraction) -> float:
+        return float((value - zero) / whole)
+
+    width = _WIDTH[limit.rule] * sqrt(float(variance)) / abs(float(whole)) if variance is not None else 0.0
     ends = sorted((at(end), end) for end in (low, high) if end is not None)
     two = len(ends) == 2
     inside = (ends[0][0], ends[1][0]) if two else (0.0, ends[0][0])
@@ -88,9 +90,8 @@ def _one_sided(
     return _line(start, NEW_AT, limit, LIMIT_AT)
 
 
-def _line(first: Fraction, at_first: float, second: Fraction, at_second: float) -> tuple[Fraction, Fraction]:
+def _line(first: Fraction, at_first: Fraction, second: Fraction, at_second: Fraction) -> tuple[Fraction, Fraction]:
     """The sizes at 0 and 1 of the scale on which two sizes stand at two places."""
-    a, b = Fraction(at_first), Fraction(at_second)
-    per_place = (second - first) / (b - a)
-    zero = first - a * per_place
+    per_place = (second - first) / (at_second - at_first)
+    zero = first - at_first * per_place
     return zero, zero + per_place
