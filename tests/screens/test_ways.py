@@ -277,3 +277,15 @@ async def test_a_refusal_after_the_job_was_left_is_said(path: Path) -> None:
             pilot.app.post_message(events.Key(key, key if len(key) == 1 else None))
         await until(pilot, lambda: "brush-length 1,234" in text_of(pilot))
         assert text_of(pilot).startswith(" Wearline  Bench")
+
+
+async def test_leaving_a_job_with_a_refused_value_is_said(path: Path) -> None:
+    """The cell says why a value was not taken; whoever leaves without mending it is told so once more at the bench."""
+    async with opened(path) as pilot:
+        await at_row(pilot, "brush-length")
+        await typed(pilot, "1,234")
+        await keys(pilot, "enter")
+        await written(pilot)
+        await keys(pilot, "escape")
+        await until(pilot, lambda: "1001, brush-length 1,234" in text_of(pilot))
+        assert text_of(pilot).startswith(" Wearline  Bench")

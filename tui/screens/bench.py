@@ -100,7 +100,7 @@ class Bench(Standing):
 
         for order, answer in answers:
             token: Any = order.token
-            if isinstance(answer, WearlineError) and not token[0].is_attached:
+            if isinstance(answer, WearlineError) and token[0].job not in self.app.screen_stack:
                 self.refuse(f"{order.tag}, {order.entry.characteristic} {order.entry.text}: {answer}")
 
     def look_again(self) -> None:

@@ -142,6 +142,8 @@ class JobScreen(Standing):
             return
         self.sheet_pane.close_buffer()
         self.dismiss()
+        for (name, _), cell in self.sheet_pane.grid.keying.refused().items():
+            self.refuse(f"{self.tag}, {name} {cell.text}: {cell.why}")
 
     def leaving(self) -> None:
         """The program closes: what is in the buffer goes to the writer."""
