@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
+import json
 import statistics
 import subprocess
 import sys
 import time
 from collections.abc import Callable
+from concurrent.futures import ProcessPoolExecutor
+from fractions import Fraction
+from multiprocessing import get_context
 from pathlib import Path
 
 ROOT = Path(__file__).resolve().parents[2]
@@ -41,3 +45,37 @@ def note(what: str, ours: float, yardstick: str, theirs: float, ratio: float, bo
     print("\n" + row.replace("\t", " | "))
     with TABLE.open("a", encoding="utf-8") as table:
         table.write(row + "\n")
+
+
+def _work() -> int:
+    """A fixed piece of work like ours: exact numbers, texts, tables by key; some ten milliseconds."""
+    seen: dict[str, Fraction] = {}
+    for n in range(1, 3000):
+        seen[json.dumps([n, f"{n / 7:.3f}"])] = Fraction(n, 7 + n % 13) * Fraction(3, 1000)
+    return sum(value.denominator for value in seen.values())
+
+
+WORK_SECONDS = 0.0190
+"""What `_work` takes on the machine that the figures in DEVELOPERS.md come from, when it is quiet."""
+
+
+def pace(processes: int = 1) -> float:
+    """How many times slower than that machine, quiet, this one is now; at least 1.
+
+    Bounds in seconds are held times this: a ratio to a fixed piece of work done in the same run. With `processes` above 1
+    as many do it at once, for what works on as many cores.
+    """
+    if processes == 1:
+        return max(1.0, _timed(None) / WORK_SECONDS)
+    with ProcessPoolExecutor(processes, mp_context=get_context("spawn")) as pool:
+        list(pool.map(_timed, range(processes)))  # started and warm
+        return max(1.0, statistics.mean(pool.map(_timed, range(processes))) / WORK_SECONDS)
+
+
+def _timed(_: object) -> float:
+    took = []
+    for _ in range(15):
+        begun = time.perf_counter()
+        _work()
+        took.append(time.perf_counter() - begun)
+    return statistics.median(took)

@@ -17,7 +17,7 @@ import pytest
 
 from store import records, search
 from tests.benchmarks import notes
-from tests.benchmarks.measure import ROOT, TABLE
+from tests.benchmarks.measure import ROOT, TABLE, pace
 
 FULL = os.environ.get("WEARLINE_FULL") == "1"
 SIZES = (10_000, 100_000, 1_000_000) if FULL else (10_000,)
@@ -54,9 +54,8 @@ def test_search(path: Path) -> None:
     """
     path.with_name(path.name + ".words").unlink(missing_ok=True)
     built, loaded, plain = _run(path), _run(path), _run(path, "--beside")
-    assert (
-        min(built["p95"], loaded["p95"]) <= MOST_P95_MS
-    )  # the better of two runs: other work on the machine only adds
+    # The better of two runs: other work on the machine only adds.
+    assert min(built["p95"], loaded["p95"]) <= MOST_P95_MS * pace()
     assert max(built["peak_mib"], loaded["peak_mib"]) <= MOST_MIB
     assert loaded["had_file"]
     assert loaded["first_search_seconds"] < built["first_search_seconds"]
@@ -74,6 +73,7 @@ def test_hostile(path: Path) -> None:
     """Whatever is asked is answered within a fifth of a second, measured as the better of two times from nothing kept."""
     record = records.open(path)
     search.find(record, "warm up")
+    slow = pace()
     for asked in HOSTILE:
         times = []
         for _ in range(2):
@@ -82,7 +82,7 @@ def test_hostile(path: Path) -> None:
             search.find(record, asked, typing=True)
             times.append(time.perf_counter() - begun)
         print(f"\n{asked[:20]!r}: {1000 * min(times):.1f} ms", end="")
-        assert min(times) < MOST_HOSTILE_SECONDS
+        assert min(times) < MOST_HOSTILE_SECONDS * slow
     record.close()
 
 
@@ -100,5 +100,5 @@ def test_a_new_note_costs_little(path: Path) -> None:
         begun = time.perf_counter()
         assert len(search.find(record, "zqzqxjqzqx").hits) == n + 1
         times.append(time.perf_counter() - begun)
-    assert 1000 * sorted(times)[18] <= MOST_P95_MS
+    assert 1000 * sorted(times)[18] <= MOST_P95_MS * pace()
     record.close()
