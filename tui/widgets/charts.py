@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Protocol
 
-LINE, BAND = "█", "░"
+LINE, CURVE, BAND = "█", "━", "░"
 
 
 class Point(Protocol):
@@ -28,27 +28,44 @@ def curve_chart(steps: Sequence[Point], width: int, height: int) -> list[str]:
     if not steps:
         return []
     wide, longest = max(20, width - 7), max(steps[-1].days, 1.0)
-    top = min(1.0, max(0.05, 1.1 * max(1 - s.low for s in steps)))
-    columns: list[tuple[float, float, float, int]] = []
-    for column in range(wide):
-        day = longest * (column + 0.5) / wide
-        past = [s for s in steps if s.days <= day]
-        last = past[-1] if past else None
-        at_risk = next((s.at_risk for s in steps if s.days >= day), steps[-1].at_risk)
-        columns.append((1 - last.stays, 1 - last.high, 1 - last.low, at_risk) if last else (0.0, 0.0, 0.0, at_risk))
+    top = height * _row(min(1.0, max(1 - s.low for s in steps)), height)
+    columns = [_at(steps, longest * (column + 0.5) / wide) for column in range(wide)]
     lines = []
     for row in range(height, 0, -1):
         low, high = top * (row - 1) / height, top * row / height
         cells = [
-            LINE if low <= share < high else BAND if band_low < high and band_high >= low and band_high > 0 else " "
-            for share, band_low, band_high, _ in columns
+            CURVE if low <= share < high else BAND if band_low < high and band_high >= low and band_high > 0 else " "
+            for share, band_low, band_high in columns
         ]
-        lines.append(f"{high:5.0%} │{''.join(cells)}")
+        lines.append(f"{high:5.{0 if top >= height / 100 else 1}%} │{''.join(cells)}")
     lines.append(f"      └{'─' * wide}")
-    marks = [0, wide // 3, 2 * wide // 3, wide - 6]
-    lines.append(_marks("days", [(m, f"{longest * m / wide:.0f}") for m in marks], wide))
-    lines.append(_marks("risk", [(m, str(columns[m][3])) for m in marks], wide))
+    days = _days(longest, wide)
+    marks = [(int(day * wide / longest), day) for day in days]
+    lines.append(_marks("days", [(m, str(day)) for m, day in marks], wide))
+    lines.append(_marks("risk", [(m, str(_at_risk(steps, day))) for m, day in marks], wide))
     return lines
+
+
+def _row(top: float, height: int) -> float:
+    """The share that one row stands for: a round one, so that the highest finds room."""
+    return next(share for share in (0.005, 0.01, 0.02, 0.025, 0.05, 0.1, 0.2, 1.0) if share * height > top)
+
+
+def _at(steps: Sequence[Point], day: float) -> tuple[float, float, float]:
+    """The share returned by a day, and its limits."""
+    last = next((s for s in reversed(steps) if s.days <= day), None)
+    return (0.0, 0.0, 0.0) if last is None else (1 - last.stays, 1 - last.high, 1 - last.low)
+
+
+def _at_risk(steps: Sequence[Point], day: float) -> int:
+    return next((s.at_risk for s in steps if s.days >= day), steps[-1].at_risk)
+
+
+def _days(longest: float, wide: int) -> list[int]:
+    """Round days along the axis, at most six; the days of quarters and years where they are of use."""
+    steps = (1, 2, 5, 10, 15, 30, 45, 90, 180, 365, 730, 1825, 3650)
+    step = next((s for s in steps if longest / s <= 6), int(longest / 5) + 1)
+    return [day for day in range(0, int(longest) + 1, step) if day * wide / longest <= wide - 4]
 
 
 def _marks(head: str, marks: Sequence[tuple[int, str]], wide: int) -> str:

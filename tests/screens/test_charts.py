@@ -1,0 +1,60 @@
+"""Charts in characters: round marks on both axes, a curve within its band, dots on their intervals."""
+
+from __future__ import annotations
+
+import re
+
+import pytest
+
+from store.rules.survival import Step, curve
+from tui.widgets import charts
+
+
+def steps(longest: float) -> tuple[Step, ...]:
+    """A curve of forty units, every fourth of which came back, the last after `longest` days."""
+    days = [longest * n / 40 for n in range(1, 41)]
+    return curve(days, [n % 4 == 0 for n in range(1, 41)])
+
+
+@pytest.mark.parametrize("longest", [3, 40, 211, 700, 5000])
+def test_the_marks_are_round_and_find_room(longest: float) -> None:
+    """Shares of one row are all alike, days are whole, at most seven, and nothing is wider than asked for."""
+    lines = charts.curve_chart(steps(longest), 72, 12)
+    shares = [float(line.split("%")[0]) for line in lines[:12]]
+    assert len({round(a - b, 6) for a, b in zip(shares, shares[1:], strict=False)}) == 1
+    days = [int(n) for n in re.findall(r"\d+", lines[-2])]
+    assert days[0] == 0
+    assert len(days) <= 7
+    assert len({b - a for a, b in zip(days, days[1:], strict=False)}) <= 1
+    assert len(re.findall(r"\d+", lines[-1])) == len(days)
+    assert max(map(len, lines)) <= 72
+
+
+def test_the_curve_stands_in_its_band() -> None:
+    """In each column there is one mark of the curve, and the band is on both sides of it."""
+    found = steps(200)
+    rows = [line[7:].ljust(65) for line in charts.curve_chart(found, 72, 12)[:12]]
+    for column in range(65):
+        marks = [row[column] for row in rows]
+        assert marks.count(charts.CURVE) == 1
+        kept = "".join(marks).strip()
+        assert " " not in kept
+
+
+def test_numbers_at_risk_are_those_of_the_curve() -> None:
+    """What the curve says was at risk at the step that follows each mark."""
+    found = steps(200)
+    lines = charts.curve_chart(found, 72, 12)
+    days, risks = ([int(n) for n in re.findall(r"\d+", line)] for line in lines[-2:])
+    assert risks == [next(s.at_risk for s in found if s.days >= day) for day in days]
+
+
+def test_nothing_is_drawn_of_nothing() -> None:
+    """No steps, no chart; no interval, no dot."""
+    assert charts.curve_chart((), 72, 12) == []
+    assert charts.dot(None, None, None, 0.5, 10).strip() == ""
+
+
+def test_a_dot_stands_on_its_interval() -> None:
+    """From low to high on a scale from 0 to `top`."""
+    assert charts.dot(0.5, 0.25, 0.75, 1.0, 9) == "  ──●──  "
