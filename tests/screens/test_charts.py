@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 import re
 
 import pytest
@@ -21,11 +22,11 @@ def test_the_marks_are_round_and_find_room(longest: float) -> None:
     """Shares of one row are all alike, days are whole, at most seven, and nothing is wider than asked for."""
     lines = charts.curve_chart(steps(longest), 72, 12)
     shares = [float(line.split("%")[0]) for line in lines[:12]]
-    assert len({round(a - b, 6) for a, b in zip(shares, shares[1:], strict=False)}) == 1
+    assert len({round(a - b, 6) for a, b in itertools.pairwise(shares)}) == 1
     days = [int(n) for n in re.findall(r"\d+", lines[-2])]
     assert days[0] == 0
     assert len(days) <= 7
-    assert len({b - a for a, b in zip(days, days[1:], strict=False)}) <= 1
+    assert len({b - a for a, b in itertools.pairwise(days)}) <= 1
     assert len(re.findall(r"\d+", lines[-1])) == len(days)
     assert max(map(len, lines)) <= 72
 
