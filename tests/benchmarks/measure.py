@@ -47,6 +47,11 @@ def note(what: str, ours: float, yardstick: str, theirs: float, ratio: float, bo
         table.write(row + "\n")
 
 
+def note_held(what: str, ours: float, bound: float, slow: float, said: str) -> None:
+    """A row for what is bound in seconds: beside it the fixed piece of work as it went in this run; the ratio is to the bound."""
+    note(what, ours, "a fixed piece of work", slow * WORK_SECONDS, ours / slow / bound, said)
+
+
 def _work() -> int:
     """A fixed piece of work like ours: exact numbers, texts, tables by key; some ten milliseconds."""
     seen: dict[str, Fraction] = {}

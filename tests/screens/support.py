@@ -58,8 +58,9 @@ class Terminal:
     """The program in a real pseudo-terminal; `screen` is what a person would see."""
 
     def __init__(
-        self, arguments: list[str], size: tuple[int, int] = (80, 24), env: dict[str, str] | None = None
-    ) -> None:
+        self, arguments: list[str], size: tuple[int, int] = (80, 24), env: dict[str, str] | None = None,
+        module: str = "tui",
+    ) -> None:  # fmt: skip
         self.screen = pyte.Screen(*size)
         self.stream = pyte.ByteStream(self.screen)
         self.pid, self.fd = pty.fork()
@@ -71,7 +72,7 @@ class Terminal:
                 "TEXTUAL_ANIMATIONS": "none",
                 **(env or {}),
             }
-            os.execve(sys.executable, [sys.executable, "-m", "tui", *arguments], wanted)
+            os.execve(sys.executable, [sys.executable, "-m", module, *arguments], wanted)
         fcntl.ioctl(self.fd, termios.TIOCSWINSZ, struct.pack("HHHH", size[1], size[0], 0, 0))
 
     def read(self, seconds: float) -> None:

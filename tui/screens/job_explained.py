@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from textwrap import wrap
 from typing import Any
@@ -10,6 +10,7 @@ from typing import Any
 from rich.style import NULL_STYLE, Style
 from rich.text import Text
 from textual.geometry import Size
+from textual.widget import Widget
 
 from tui.screens.job_faces import Which, rule, shown
 from tui.widgets import wear_rule
@@ -38,6 +39,18 @@ class Said:
     tone: str = ""
     is_drawing: bool = False
     is_whole: bool = False
+
+
+class Explanation(Widget):
+    """The lines as a widget. They are made when it is painted, so that a burst of keys pays for no more than what is seen."""
+
+    def __init__(self, lines: Callable[[Size], Text], *, id: str) -> None:  # noqa: A002
+        super().__init__(id=id)
+        self.lines = lines
+
+    def render(self) -> Text:
+        """As many lines as there is room for."""
+        return self.lines(self.content_size)
 
 
 def explanation(known: Known, keying: Keying, room: Size, tones: Mapping[str, str]) -> Text:

@@ -6,14 +6,16 @@ from collections import Counter
 from collections.abc import Sequence
 from typing import Any, ClassVar
 
+from rich.text import Text
 from textual import on
 from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.containers import Vertical
-from textual.widgets import Static
+from textual.geometry import Size
 
 from store.errors import WearlineError
 from tui.screens import job_explained, job_faces
+from tui.screens.job_explained import Explanation
 from tui.widgets.keying import State
 from tui.widgets.sheet import ReadingSheet
 from tui.writer import Order
@@ -58,7 +60,7 @@ class JobSheet(Vertical):
     def compose(self) -> ComposeResult:
         """The sheet over the lines that explain it."""
         yield ReadingSheet(id="sheet", turning=frozenset({"f2", "ctrl+r"}))
-        yield Static("", id="explain", markup=False)
+        yield Explanation(self._explained, id="explain")
 
     @property
     def job(self) -> Any:
@@ -230,12 +232,14 @@ class JobSheet(Vertical):
 
     @on(ReadingSheet.Moved)
     def explain(self) -> None:
-        """Explain the row under the cursor below the sheet."""
+        """Explain the row under the cursor below the sheet, at the next painting."""
+        self.query_one(Explanation).refresh()
+
+    def _explained(self, room: Size) -> Text:
         if self.sheet is None:
-            return
-        below = self.query_one("#explain", Static)
+            return Text()
         known = job_explained.Known(self.sheet, self.questions, self.gauges, self.precedents)
-        below.update(job_explained.explanation(known, self.grid.keying, below.content_size, self.app.theme_variables))
+        return job_explained.explanation(known, self.grid.keying, room, self.app.theme_variables)
 
     def action_stage(self) -> None:
         """As found or as left."""
