@@ -14,8 +14,8 @@ from textual.message import Message
 from textual.screen import ModalScreen
 
 from tui.screens.places import PLACES, load
-from tui.screens.standing import say
 from tui.theme import THEMES, Uncoloured
+from tui.widgets.key_line import say
 from tui.writer import Order, Writer
 
 if TYPE_CHECKING:

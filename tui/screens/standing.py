@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from rich.text import Text
@@ -141,11 +141,3 @@ class Standing(Screen[Any]):
     def refuse(self, why: str) -> None:
         """Say in one line why something was not done."""
         self.notify(why, severity="error", markup=False)
-
-
-def say(screens: Sequence[Screen[Any]], words: str, *, is_loud: bool) -> None:
-    """Say something above the keys of the full screen that is on top or beneath a form."""
-    for screen in reversed(screens):
-        for line in screen.query(KeyLine):
-            line.say(words, is_loud=is_loud)
-            return

@@ -5,7 +5,7 @@ Above them, for a while, what came of the last thing that was asked for.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 from textwrap import wrap
 from typing import Any
@@ -128,6 +128,14 @@ class KeyLine(Widget):
             if line == event.y and begin <= event.x < end:
                 await self.app.run_action(key.action, key.node)
                 return
+
+
+def say(screens: Sequence[Screen[Any]], words: str, *, is_loud: bool) -> None:
+    """Say something above the keys of the full screen that is on top or beneath a form."""
+    for screen in reversed(screens):
+        for line in screen.query(KeyLine):
+            line.say(words, is_loud=is_loud)
+            return
 
 
 def _length(key: Key) -> int:
