@@ -100,7 +100,9 @@ class Bench(Standing):
 
         for order, answer in answers:
             token: Any = order.token
-            if isinstance(answer, WearlineError) and token[0].job not in self.app.screen_stack:
+            pane = token[0]
+            is_shown = pane.is_attached and pane.screen in self.app.screen_stack
+            if isinstance(answer, WearlineError) and not is_shown:
                 self.refuse(f"{order.tag}, {order.entry.characteristic} {order.entry.text}: {answer}")
 
     def look_again(self) -> None:
