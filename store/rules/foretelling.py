@@ -46,10 +46,10 @@ def separate(returned: Sequence[float] | Any, stayed: Sequence[float] | Any) -> 
 
 def tighter(
     returned: Sequence[float] | Any, stayed: Sequence[float] | Any, limit: float, *, keep_below: bool
-) -> tuple[float, float]:
-    """The share of units that came back which a limit would have caught, and of the others that it would have refused."""
+) -> tuple[int, int]:
+    """How many of the units that came back a limit would have caught, and how many of the others it would have refused."""
     import numpy as np
 
     ours, others = np.asarray(returned, float), np.asarray(stayed, float)
     caught, refused = (ours > limit, others > limit) if keep_below else (ours < limit, others < limit)
-    return float(caught.mean()) if len(ours) else 0.0, float(refused.mean()) if len(others) else 0.0
+    return int(caught.sum()), int(refused.sum())

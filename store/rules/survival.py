@@ -58,6 +58,23 @@ def fraction_at(steps: Sequence[Step], day: float, longest: float) -> tuple[floa
     return 1 - before[-1].stays, 1 - before[-1].high, 1 - before[-1].low
 
 
+MARKS = (1, 2, 5, 10, 15, 30, 45, 90, 180, 365, 730, 1825, 3650)
+
+
+def marks(longest: float, most: int = 6) -> tuple[int, ...]:
+    """Round days from 0 to at most `longest`, no more than `most` + 1; those of quarters and years where they are of use."""
+    step = next((step for step in MARKS if longest / step <= most), int(longest / most) + 1)
+    return tuple(range(0, int(longest) + 1, step))
+
+
+def at_risk(days: Sequence[float] | Any, when: Sequence[int]) -> tuple[tuple[int, int], ...]:
+    """How many units were followed as long as each of these days, or longer."""
+    import numpy as np
+
+    followed = np.sort(np.asarray(days, float))
+    return tuple((day, len(followed) - int(np.searchsorted(followed, day, side="left"))) for day in when)
+
+
 @dataclass(frozen=True, slots=True)
 class LogRank:
     """Observed and expected returns of the group, the statistic (chi-square, one degree of freedom) and its p.

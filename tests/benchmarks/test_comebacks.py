@@ -10,7 +10,7 @@ from pathlib import Path
 
 import pytest
 
-from store import comebacks, records
+from store import comebacks, foretelling, records
 from tests.benchmarks.big_record import make
 from tests.benchmarks.measure import note_held, pace
 
@@ -40,7 +40,7 @@ def test_review_and_foretell(tmp_path: Path, jobs: int) -> None:
     found = comebacks.review(record, by="lot", until="2027-06-01")
     review = time.perf_counter() - begun
     begun = time.perf_counter()
-    comebacks.foretell(record, until="2027-06-01")
+    foretelling.foretell(record, until="2027-06-01")
     foretell = time.perf_counter() - begun
     record.close()
     memory = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024

@@ -7,20 +7,22 @@ import re
 
 import pytest
 
-from store.rules.survival import Step, curve
+from store.rules import survival
 from tui.widgets import charts
 
 
-def steps(longest: float) -> tuple[Step, ...]:
-    """A curve of forty units, every fourth of which came back, the last after `longest` days."""
+def drawn(longest: float) -> tuple[tuple[survival.Step, ...], list[str]]:
+    """The curve of forty units, every fourth of which came back, the last followed for `longest` days; and its chart."""
     days = [longest * n / 40 for n in range(1, 41)]
-    return curve(days, [n % 4 == 0 for n in range(1, 41)])
+    steps = survival.curve(days, [n % 4 == 0 for n in range(1, 41)])
+    at_risk = survival.at_risk(days, survival.marks(longest))
+    return steps, charts.curve_chart(steps, at_risk, longest, 72, 12)
 
 
 @pytest.mark.parametrize("longest", [3, 40, 211, 700, 5000])
 def test_the_marks_are_round_and_find_room(longest: float) -> None:
     """Shares of one row are all alike, days are whole, at most seven, and nothing is wider than asked for."""
-    lines = charts.curve_chart(steps(longest), 72, 12)
+    _, lines = drawn(longest)
     shares = [float(line.split("%")[0]) for line in lines[:12]]
     assert len({round(a - b, 6) for a, b in itertools.pairwise(shares)}) == 1
     days = [int(n) for n in re.findall(r"\d+", lines[-2])]
@@ -33,8 +35,7 @@ def test_the_marks_are_round_and_find_room(longest: float) -> None:
 
 def test_the_curve_stands_in_its_band() -> None:
     """In each column there is one mark of the curve, and the band is on both sides of it."""
-    found = steps(200)
-    rows = [line[7:].ljust(65) for line in charts.curve_chart(found, 72, 12)[:12]]
+    rows = [line[7:].ljust(65) for line in drawn(200)[1][:12]]
     for column in range(65):
         marks = [row[column] for row in rows]
         assert marks.count(charts.CURVE) == 1
@@ -42,17 +43,15 @@ def test_the_curve_stands_in_its_band() -> None:
         assert " " not in kept
 
 
-def test_numbers_at_risk_are_those_of_the_curve() -> None:
-    """What the curve says was at risk at the step that follows each mark."""
-    found = steps(200)
-    lines = charts.curve_chart(found, 72, 12)
-    days, risks = ([int(n) for n in re.findall(r"\d+", line)] for line in lines[-2:])
-    assert risks == [next(s.at_risk for s in found if s.days >= day) for day in days]
+def test_numbers_at_risk_stand_below_their_days() -> None:
+    """Forty at day 0; a unit followed for just so long is still counted."""
+    days, risks = ([int(n) for n in re.findall(r"\d+", line)] for line in drawn(200)[1][-2:])
+    assert (days, risks) == ([0, 45, 90, 135, 180], [40, 32, 23, 14, 5])
 
 
 def test_nothing_is_drawn_of_nothing() -> None:
     """No steps, no chart; no interval, no dot."""
-    assert charts.curve_chart((), 72, 12) == []
+    assert charts.curve_chart((), (), 0.0, 72, 12) == []
     assert charts.dot(None, None, None, 0.5, 10).strip() == ""
 
 

@@ -11,7 +11,7 @@ import numpy as np
 import pytest
 from click.testing import CliRunner
 
-from store import comebacks, files
+from store import comeback_groups, comeback_words, comebacks, files, foretelling
 from store.errors import Refused
 from store.records import Record
 from store.rules.survival import Pooled, rejected
@@ -68,11 +68,11 @@ def test_only_what_counts_is_counted(record: Record, tmp_path: Path) -> None:
 def test_words_where_there_is_little(record: Record, tmp_path: Path, lines: list[str], said: str) -> None:
     """None at all, every job, two in all, wrong dates: words, not a crash; groups and foretelling too."""
     history(record, tmp_path, lines)
-    for by in (None, *comebacks.GROUPS):
+    for by in (None, *comeback_groups.KINDS):
         found = comebacks.review(record, by=by, until="2026-11-01")
         assert any(said in remark for remark in found.remarks), found.remarks
         json.dumps(comebacks.as_json(found))
-    assert comebacks.foretell(record, until="2026-11-01") == ()
+    assert foretelling.foretell(record, until="2026-11-01") == ()
 
 
 def test_bad_questions_are_refused(record: Record) -> None:
@@ -192,7 +192,7 @@ def test_words_set_the_notes_of_comebacks_apart(record: Record, tmp_path: Path) 
         notes.add(record, tag, "contacts pitted again, replaced")
     for n in range(1, 7):
         notes.add(record, f"R{n}", "brushes replaced, turned")
-    found = comebacks.words(record, until="2026-11-01")
+    found = comeback_words.words(record, until="2026-11-01")
     assert {w.word for w in found[:3]} >= {"contacts", "pitted"}
     (contacts,) = [w for w in found if w.word == "contacts"]
     assert (contacts.back, contacts.of_back, contacts.other, contacts.of_other) == (2, 2, 0, 6)

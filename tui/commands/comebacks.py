@@ -41,8 +41,8 @@ def comebacks(
     as_json: bool,
 ) -> None:  # fmt: skip
     """What returns of the units released in a period, how soon, and whether groups differ by more than chance."""
+    from store import comeback_words, files
     from store import comebacks as store_comebacks
-    from store import files
     from store.errors import Refused
     from tui.widgets.charts import curve_chart
 
@@ -51,7 +51,7 @@ def comebacks(
     if as_json or out is not None:
         fields = ("word", "back", "of_back", "other", "of_other")
         whole["words"] = [
-            {name: getattr(w, name) for name in fields} for w in store_comebacks.words(record, until=until)
+            {name: getattr(w, name) for name in fields} for w in comeback_words.words(record, until=until)
         ]
     if out is not None:
         path = Path(out)
@@ -75,7 +75,7 @@ def comebacks(
     )
     for day, at in found.at.items():
         click.echo(f"  by {day} days: " + ("too young" if at is None else f"{at[0]:.1%} ({at[1]:.1%} to {at[2]:.1%})"))
-    for line in curve_chart(found.curve, 72, 12):
+    for line in curve_chart(found.curve, found.at_risk, found.longest, 72, 12):
         click.echo(line)
     write_table(
         ("finding", "count", "share", "cumulative"),
@@ -98,7 +98,7 @@ def comebacks(
         )
     for remark in found.remarks:
         click.echo(remark)
-    apart = store_comebacks.words(record, until=until)
+    apart = comeback_words.words(record, until=until)
     if apart:
         said = ", ".join(f"{w.word} {w.back}/{w.of_back} against {w.other}/{w.of_other}" for w in apart[:8])
         click.echo(f"words that set their notes apart: {said}")
@@ -111,16 +111,17 @@ def comebacks(
 @on_record
 def foretell(record: Record, since: str, until: str, as_json: bool) -> None:
     """Which as-left readings of earlier jobs went with comebacks within a year."""
-    from store import comebacks as store_comebacks
+    from store import foretelling
 
-    found = store_comebacks.foretell(record, since=since, until=until)
+    found = foretelling.foretell(record, since=since, until=until)
     if as_json:
         write_json(
             [
                 {
                     "model": f.model, "characteristic": f.characteristic, "unit": f.unit, "returned": f.found.returned, "stayed": f.found.stayed,
                     "area": f.found.area, "low": f.found.low, "high": f.found.high, "p": f.found.p, "adjusted": f.adjusted,
-                    "limit": f.limit, "caught": f.caught, "refused": f.refused, "says": f.says,
+                    "limit": f.limit, "caught": f.caught.share, "caught_low": f.caught.low, "caught_high": f.caught.high,
+                    "refused": f.refused.share, "refused_low": f.refused.low, "refused_high": f.refused.high, "says": f.says,
                 }
                 for f in found
             ]

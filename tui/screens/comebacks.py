@@ -86,7 +86,7 @@ class Comebacks(Standing):
         )
         height = max(5, min(10, self.size.height // 3))
         self.query_one("#curve", Static).update(
-            "\n".join(charts.curve_chart(found.curve, self.size.width - 2, height - 3))
+            "\n".join(charts.curve_chart(found.curve, found.at_risk, found.longest, self.size.width - 2, height - 3))
         )
         items = [Item((remark,), heading=True) for remark in found.remarks if not found.groups]
         top = max([g.high for g in found.groups if g.high is not None], default=0.0)
@@ -158,10 +158,10 @@ class Comebacks(Standing):
         """Which as-left readings went with comebacks within a year."""
 
         def question() -> Any:
-            from store import comebacks
+            from store import foretelling
 
             assert self.record is not None
-            return comebacks.foretell(self.record, since=self.since, until=self.until)
+            return foretelling.foretell(self.record, since=self.since, until=self.until)
 
         self.ask("foretell", question, self._show_foretold)
 

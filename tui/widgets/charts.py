@@ -23,11 +23,16 @@ class Point(Protocol):
     def at_risk(self) -> int: ...
 
 
-def curve_chart(steps: Sequence[Point], width: int, height: int) -> list[str]:
-    """The share returned over the days since release, with its band, and the number at risk below; nothing without steps."""
+def curve_chart(
+    steps: Sequence[Point], at_risk: Sequence[tuple[int, int]], longest: float, width: int, height: int
+) -> list[str]:
+    """The share returned over the days since release, with its band, and the number at risk below; nothing without steps.
+
+    The days run to `longest`, the marks below stand at the days of `at_risk`.
+    """
     if not steps:
         return []
-    wide, longest = max(20, width - 7), max(steps[-1].days, 1.0)
+    wide, longest = max(20, width - 7), max(longest, 1.0)
     top = height * _row(min(1.0, max(1 - s.low for s in steps)), height)
     columns = [_at(steps, longest * (column + 0.5) / wide) for column in range(wide)]
     lines = []
@@ -39,10 +44,9 @@ def curve_chart(steps: Sequence[Point], width: int, height: int) -> list[str]:
         ]
         lines.append(f"{high:5.{0 if top >= height / 100 else 1}%} │{''.join(cells)}")
     lines.append(f"      └{'─' * wide}")
-    days = _days(longest, wide)
-    marks = [(int(day * wide / longest), day) for day in days]
-    lines.append(_marks("days", [(m, str(day)) for m, day in marks], wide))
-    lines.append(_marks("risk", [(m, str(_at_risk(steps, day))) for m, day in marks], wide))
+    marks = [(int(day * wide / longest), day, n) for day, n in at_risk if day * wide / longest <= wide - 4]
+    lines.append(_marks("days", [(m, str(day)) for m, day, _ in marks], wide))
+    lines.append(_marks("risk", [(m, str(n)) for m, _, n in marks], wide))
     return lines
 
 
@@ -55,17 +59,6 @@ def _at(steps: Sequence[Point], day: float) -> tuple[float, float, float]:
     """The share returned by a day, and its limits."""
     last = next((s for s in reversed(steps) if s.days <= day), None)
     return (0.0, 0.0, 0.0) if last is None else (1 - last.stays, 1 - last.high, 1 - last.low)
-
-
-def _at_risk(steps: Sequence[Point], day: float) -> int:
-    return next((s.at_risk for s in steps if s.days >= day), steps[-1].at_risk)
-
-
-def _days(longest: float, wide: int) -> list[int]:
-    """Round days along the axis, at most six; the days of quarters and years where they are of use."""
-    steps = (1, 2, 5, 10, 15, 30, 45, 90, 180, 365, 730, 1825, 3650)
-    step = next((s for s in steps if longest / s <= 6), int(longest / 5) + 1)
-    return [day for day in range(0, int(longest) + 1, step) if day * wide / longest <= wide - 4]
 
 
 def _marks(head: str, marks: Sequence[tuple[int, str]], wide: int) -> str:
