@@ -19,8 +19,9 @@ from store.gauges import Gauge
 from store.limit_sheets import LimitSheet, SheetLimit
 from store.records import Record
 from store.rules import at_voltage, certainty, derived, quantities
-from store.rules.limits import Judgement, Limit, Measured, because, from_kept, judge, kept
+from store.rules.limits import Judgement, Limit, Measured, from_kept, judge, kept
 from store.rules.readings import Mark, Typed
+from store.rules.verdict_words import because
 from store.sqlite.engine import driver, rows
 
 Sure = dict[tuple[int, str, str], tuple[Fraction | None, Fraction | None]]

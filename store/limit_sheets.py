@@ -20,9 +20,10 @@ from store.changes import Change
 from store.errors import NotFound, Refused, brief
 from store.records import Record
 from store.rules import quantities
-from store.rules.limits import Limit, Rule, Statistic
+from store.rules.limits import Limit, Rule
 from store.rules.quantities import Quantity
 from store.rules.readings import Mark, parse
+from store.rules.statistic import Statistic
 from store.tables.limits import LimitRow, RevisionRow
 
 STAGES = ("as-found", "as-left", "both")

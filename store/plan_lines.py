@@ -14,7 +14,8 @@ from store.jobs import Job
 from store.models import Model
 from store.records import Record
 from store.rules import brushes, bushings, commutator, quantities
-from store.rules.limits import Verdict, median
+from store.rules.limits import Verdict
+from store.rules.statistic import median
 from store.sheets import Sheet, SheetRow
 from store.sqlite.engine import rows
 

@@ -11,7 +11,7 @@ from store import readings
 from store.catalogue import catalogue
 from store.records import Record
 from store.rules import quantities
-from store.rules.limits import median
+from store.rules.statistic import median
 from store.sqlite.engine import rows
 
 NEWEST = 100

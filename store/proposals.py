@@ -10,7 +10,7 @@ from store.catalogue import catalogue
 from store.errors import Refused
 from store.records import Record
 from store.rules import quantities
-from store.rules.limits import Statistic, median
+from store.rules.statistic import Statistic, median
 from store.sqlite.engine import rows
 
 FEWEST = 8

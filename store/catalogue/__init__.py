@@ -17,8 +17,8 @@ from store.errors import NotFound, Refused, brief
 from store.nearest import nearest
 from store.records import Record
 from store.rules import derived, quantities
-from store.rules.limits import Statistic
 from store.rules.quantities import Quantity
+from store.rules.statistic import Statistic
 from store.tables.models import CharacteristicRow
 
 MACHINES = ("starter", "generator", "alternator")

@@ -12,8 +12,9 @@ from dataclasses import replace
 from fractions import Fraction
 
 from store.rules import quantities, running
-from store.rules.limits import Judgement, Limit, Measured, Statistic, Verdict, judge
+from store.rules.limits import Judgement, Limit, Measured, Verdict, judge
 from store.rules.running import Comparable
+from store.rules.statistic import Statistic
 
 GOVERNED = {"no-load-speed": "no-load-voltage", "no-load-current": "no-load-voltage"}
 """Characteristics whose limit holds at a voltage, and the characteristic that says at which they were tested."""

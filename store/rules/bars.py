@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 
 from store.errors import Refused
-from store.rules.limits import median
+from store.rules.statistic import median
 
 
 @dataclass(frozen=True, slots=True)

@@ -21,8 +21,9 @@ from fractions import Fraction
 
 from store.errors import Refused, brief
 from store.rules import certainty, limits, quantities
-from store.rules.limits import Judgement, Limit, Measured, Statistic, Verdict
+from store.rules.limits import Judgement, Limit, Measured, Verdict
 from store.rules.quantities import Quantity
+from store.rules.statistic import Statistic
 
 _PARTS = {"clearance": 2, "ovality": 1, "taper": 1, "spread": 1, "wear": 1, "pressure": 2}
 _Sized = tuple[Fraction, str, Fraction | None, int]

@@ -13,23 +13,13 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from enum import StrEnum
 from fractions import Fraction
-from math import floor, lcm
+from functools import partial
+from math import lcm
 from typing import Any
 
 from store.rules import certainty, quantities
 from store.rules.readings import Mark, Typed
-
-
-class Statistic(StrEnum):
-    """What of several readings is judged."""
-
-    each = "each"
-    smallest = "smallest"
-    largest = "largest"
-    mean = "mean"
-    spread = "spread"
-    deviation = "deviation"
-    attribute = "attribute"
+from store.rules.statistic import Sized, Statistic, governing, median
 
 
 class Rule(StrEnum):
@@ -84,7 +74,7 @@ class Judgement:
     rule         the rule that was applied, `simple` where the uncertainty is not known, whatever was asked for
     probability  that the size conforms (JCGM 106:2012), None without a known uncertainty
     wear_used    (new - y)/(new - limit), may pass 1; None without a new size
-    reason       a code that `because` puts into words: "", short, failed, cannot-judge, skipped, narrow, unknown-u, voltage
+    reason       a code that `verdict_words.because` puts into words: "", short, failed, cannot-judge, skipped, narrow, unknown-u, voltage
     detail       what was said with a failed or skipped test, or how the value was brought to the limit's voltage
     """
 
@@ -123,18 +113,15 @@ def judge(measured: Sequence[Measured], statistic: Statistic, limit: Limit | Non
         detail = "; ".join(m.typed.detail for m in measured if m.typed.detail)
         verdict = Verdict.not_measured if limit else Verdict.no_limit
         reason = "skipped" if measured else "none"
-        return Judgement(
-            verdict,
-            statistic,
-            count=0,
-            expected=expected,
-            unit=limit.unit if limit else "",
-            reason=reason,
-            detail=detail,
-        )
+        unit = limit.unit if limit else ""
+        return Judgement(verdict, statistic, unit=unit, expected=expected, reason=reason, detail=detail)
     unit = limit.unit if limit and statistic is not Statistic.deviation else numbers[0].typed.unit
     sized = [_sized(m, unit) for m in numbers]
-    value, at, variance = _governing(sized, statistic, limit)
+    if statistic is Statistic.deviation and median([one[0] for one in sized]) == 0:
+        return Judgement(Verdict.not_comparable, statistic, count=len(numbers), expected=expected, reason="cannot-judge",
+                         detail="the middle reading is zero; is the supply on?")  # fmt: skip
+    within = None if limit is None or (limit.low is None and limit.high is None) else partial(margin, limit=limit)
+    value, at, variance = governing(sized, statistic, within)
     places = max(m.typed.places for m in numbers)
     if any(m.typed.unit != unit for m in numbers):
         places = max(places, 4 if unit == "in" else 2)
@@ -246,62 +233,14 @@ def _verdict(
     return (Verdict.in_ if inside > 0 else Verdict.out), ""
 
 
-_Sized = tuple[Fraction, str, Fraction | None]
-
-
-def _sized(one: Measured, unit: str) -> _Sized:
+def _sized(one: Measured, unit: str) -> Sized:
     value = one.typed.value
     assert value is not None
     if one.typed.unit == unit:
         return value, one.position, one.variance
     by = quantities.scale(one.typed.unit, unit)
-    return (
-        quantities.convert(value, one.typed.unit, unit),
-        one.position,
-        None if one.variance is None else one.variance * by * by,
-    )
-
-
-def _governing(sized: Sequence[_Sized], statistic: Statistic, limit: Limit | None) -> _Sized:
-    """The judged value, where it was read, and its variance."""
-    if statistic is Statistic.smallest:
-        return min(sized, key=_value)
-    if statistic is Statistic.largest:
-        return max(sized, key=_value)
-    if statistic is Statistic.mean:
-        total = certainty.combine(one[2] for one in sized)
-        n = len(sized)
-        return sum((one[0] for one in sized), Fraction(0)) / n, "", None if total is None else total / n**2
-    if statistic is Statistic.spread:
-        low, high = min(sized, key=_value), max(sized, key=_value)
-        at = f"{low[1]} to {high[1]}" if low[1] != high[1] else ""
-        return high[0] - low[0], at, certainty.combine((low[2], high[2])) if len(sized) > 1 else low[2]
-    if statistic is Statistic.deviation:
-        return _deviation(sized)
-    if limit is None or (limit.low is None and limit.high is None):
-        return min(sized, key=_value)
-    return min(sized, key=lambda one: margin(one[0], limit))
-
-
-def _deviation(sized: Sequence[_Sized]) -> _Sized:
-    """The largest deviation from the median to either side, in per cent of it. A median of zero has none: 0."""
-    middle = median([one[0] for one in sized])
-    if middle == 0:
-        return Fraction(0), sized[0][1], None
-    worst = max(sized, key=lambda one: abs(one[0] - middle))
-    by = Fraction(100) / middle
-    return abs((worst[0] - middle) * by), worst[1], None if worst[2] is None else worst[2] * by * by
-
-
-def median(values: Sequence[Fraction]) -> Fraction:
-    """The middle value, or the mean of the two in the middle. At least one value."""
-    ordered = sorted(values)
-    half = len(ordered) // 2
-    return ordered[half] if len(ordered) % 2 else (ordered[half - 1] + ordered[half]) / 2
-
-
-def _value(one: _Sized) -> Fraction:
-    return one[0]
+    variance = None if one.variance is None else one.variance * by * by
+    return quantities.convert(value, one.typed.unit, unit), one.position, variance
 
 
 def _attribute(measured: Sequence[Measured], limit: Limit | None, expected: int) -> Judgement:
@@ -322,88 +261,6 @@ def _attribute(measured: Sequence[Measured], limit: Limit | None, expected: int)
     if len(measured) < expected:
         return made(Verdict.not_measured, reason="short" if measured else "none")
     return made(Verdict.in_)
-
-
-def because(judged: Judgement, limit: Limit | None, noun: str) -> str:
-    """The verdict in one sentence: "brush 4 is 9.2 mm, 0.3 under the 9.5 minimum".
-
-    `noun` is what a position is called (brush, slot), or what the whole is. Figures have as many digits as it takes not
-    to contradict the verdict.
-    """
-    if judged.reason in {"failed", "cannot-judge", "skipped", "none"} or judged.statistic is Statistic.attribute:
-        return _said(judged, noun)
-    if judged.value is None:
-        return f"{judged.count} of {judged.expected} read" if judged.count else "no reading"
-    subject = _subject(judged, noun)
-    if judged.reason == "voltage":
-        return f"{subject} is {_with_unit(quantities.shown(judged.value, judged.places), judged.unit)}; {judged.detail}"
-    if limit is None or (limit.low is None and limit.high is None):
-        return f"{subject} is {_with_unit(quantities.shown(judged.value, judged.places), judged.unit)}; no limit is entered"
-    sentence = f"{subject} is {_against(judged, limit)}"
-    if judged.detail:
-        sentence += f" ({judged.detail})"
-    if judged.reason == "short":
-        sentence = f"{judged.count} of {judged.expected} read; so far {sentence}"
-    if judged.verdict is Verdict.in_doubt:
-        sentence += "; the gauge cannot tell"
-    if judged.probability is not None and judged.verdict is not Verdict.not_measured and judged.probability < _CERTAIN:
-        sentence += f" ({floor(judged.probability * 1000 + 1e-9) / 10} % sure to be inside)"
-    if judged.reason == "unknown-u":
-        sentence += "; judged as read, the gauge's uncertainty is not known"
-    return sentence
-
-
-_CERTAIN = 0.9995
-
-
-def _said(judged: Judgement, noun: str) -> str:
-    where = f"{noun} {judged.worst_at}".strip() if judged.worst_at not in {"", "1"} else ""
-    detail = f": {judged.detail}" if judged.detail else ""
-    if judged.reason == "failed":
-        return f"{where} failed{detail}".strip()
-    if judged.reason == "cannot-judge":
-        return f"{where} cannot be judged by this test{detail}".strip()
-    if judged.reason == "skipped":
-        return f"{where} not measured{detail}".strip()
-    if judged.reason in {"short", "none"}:
-        return f"{judged.count} of {judged.expected} tested" if judged.count else "no reading"
-    return "passed" if judged.count <= 1 else f"all {judged.count} passed"
-
-
-def _subject(judged: Judgement, noun: str) -> str:
-    kind = {Statistic.mean: "the mean", Statistic.spread: "the spread"}.get(judged.statistic)
-    if kind:
-        return f"{kind} of {judged.count}"
-    if " " in judged.worst_at:
-        return f"{noun} ({judged.worst_at})"
-    if (judged.worst_at and judged.worst_at != "1") or judged.count > 1:
-        return f"{noun} {judged.worst_at}".strip()
-    return noun
-
-
-def _against(judged: Judgement, limit: Limit) -> str:
-    value = judged.value
-    assert value is not None
-    ends = [(end, name) for end, name in ((limit.low, "minimum"), (limit.high, "maximum")) if end is not None]
-    text = quantities.shown(value, judged.places, [end for end, _ in ends])
-    end, name = min(ends, key=lambda pair: value - pair[0] if pair[1] == "minimum" else pair[0] - value)
-    shown_end = _exactly(end, judged.places)
-    if value == end:
-        fails = "" if judged.verdict is not Verdict.out else ", which fails"
-        return f"{_with_unit(text, judged.unit)}, equal to the {name}{fails}"
-    gap = _exactly(abs(Fraction(text) - end), judged.places)
-    side = "under" if value < end else "over"
-    return f"{_with_unit(text, judged.unit)}, {gap} {side} the {shown_end} {name}"
-
-
-def _exactly(size: Fraction, places: int) -> str:
-    """An exact size with at least so many decimals."""
-    text = quantities.rounded(size, places)
-    return text if Fraction(text) == size else quantities.plain(size)
-
-
-def _with_unit(text: str, unit: str) -> str:
-    return f"{text} {unit}".strip()
 
 
 def kept(judged: Judgement) -> list[Any]:

@@ -10,8 +10,9 @@ import pytest
 
 from store.rules import certainty
 from store.rules.certainty import Certainty, conformance, phi
-from store.rules.limits import Limit, Measured, Rule, Statistic, Verdict, judge
+from store.rules.limits import Limit, Measured, Rule, Verdict, judge
 from store.rules.readings import Mark, Typed
+from store.rules.statistic import Statistic
 
 F = Fraction
 

@@ -7,9 +7,10 @@ from fractions import Fraction
 import pytest
 
 from store.rules import derived, quantities
-from store.rules.limits import Limit, Measured, Rule, Statistic, Verdict, judge, wear_used
+from store.rules.limits import Limit, Measured, Rule, Verdict, judge, wear_used
 from store.rules.quantities import Quantity
 from store.rules.readings import Expected, parse, slips, two_units_agree
+from store.rules.statistic import Statistic
 
 F = Fraction
 

@@ -9,9 +9,11 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from store.rules.at_voltage import judge_at, specified
-from store.rules.limits import Judgement, Limit, Measured, Statistic, Verdict, because
+from store.rules.limits import Judgement, Limit, Measured, Verdict
 from store.rules.quantities import Quantity
 from store.rules.readings import parse
+from store.rules.statistic import Statistic
+from store.rules.verdict_words import because
 
 F = Fraction
 # TM 9-2920-242-35 para 38 (read): 24 V unit, tested at 23.0 V, at most 90 A, at least 7000 rpm

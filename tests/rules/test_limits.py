@@ -11,9 +11,11 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from store.rules.certainty import conformance
-from store.rules.limits import Limit, Measured, Rule, Statistic, Verdict, because, from_kept, judge, kept
+from store.rules.limits import Limit, Measured, Rule, Verdict, from_kept, judge, kept
 from store.rules.quantities import Quantity
 from store.rules.readings import parse
+from store.rules.statistic import Statistic
+from store.rules.verdict_words import because
 
 F = Fraction
 
@@ -149,3 +151,11 @@ def test_narrow_limits_are_judged_by_the_probability(value: Any, limit: Limit) -
     assert judged.probability is not None
     if judged.verdict is Verdict.in_:
         assert judged.probability >= 0.95
+
+
+def test_zeros_round_the_commutator_are_no_even_readings() -> None:
+    """With the supply off every drop is zero: that says nothing of the bars, whatever the limit."""
+    zeros = [Measured(str(n), parse("0", Quantity.voltage, "mV")) for n in range(1, 28)]
+    judged = judge(zeros, Statistic.deviation, Limit("%", high=F(10), expected=27))
+    assert (judged.verdict, judged.value) == (Verdict.not_comparable, None)
+    assert "is the supply on?" in because(judged, Limit("%", high=F(10)), "bar")
