@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 from store import shop
 from store.comeback_groups import FEWEST_COMEBACKS, FEWEST_RELEASES, YEAR
@@ -110,3 +112,16 @@ def foretell(record: Record, *, since: str = "", until: str = "", rate: float | 
         )
         made.append(Foretold(model, one.name, one.unit, found, a, is_named, limit, keep_below, caught, refused, says))
     return tuple(sorted(made, key=lambda f: (f.adjusted, f.model, f.characteristic)))
+
+
+def as_json(found: Sequence[Foretold]) -> list[dict[str, Any]]:
+    """The contract of `foretell --json`."""
+    return [
+        {
+            "model": f.model, "characteristic": f.characteristic, "unit": f.unit, "returned": f.found.returned, "stayed": f.found.stayed,
+            "area": f.found.area, "low": f.found.low, "high": f.found.high, "p": f.found.p, "adjusted": f.adjusted,
+            "limit": f.limit, "caught": f.caught.share, "caught_low": f.caught.low, "caught_high": f.caught.high,
+            "refused": f.refused.share, "refused_low": f.refused.low, "refused_high": f.refused.high, "says": f.says,
+        }
+        for f in found
+    ]  # fmt: skip

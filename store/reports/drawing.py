@@ -15,7 +15,7 @@ from store.reports.pen import Pen, Seen, highest
 WIDTHS_MM = {"a4": 178.0, "letter": 183.9}
 """What is left of each paper's width between margins of 16 mm."""
 
-_PAPERS = {"a4": "a4", "letter": "us-letter"}
+PAPERS = {"a4": "a4", "letter": "us-letter"}
 _PAIR_PT, _TABLE_PT = 8.5, 8.0
 _PAIR_INSET_MM, _TABLE_INSET_MM, _TABLE_RIGHT_MM = 1.7, 2.0, 2.0
 _TOGETHER = 1_000
@@ -31,7 +31,7 @@ def of(report: Report, seen: Seen = in_print) -> dict[str, Any]:
     drawn_key = _key() if any(row.rule for group in measured for row in group.rows) else []
     return {
         "document": _document(pen, report),
-        "paper": _PAPERS[report.paper],
+        "paper": PAPERS[report.paper],
         "head": {
             "shop": pen.line(brief(report.shop.name, 44), 60),
             "unit": pen.line(unit_line(report), 60),
