@@ -44,7 +44,7 @@ def comebacks(
     from store import comeback_words, files
     from store import comebacks as store_comebacks
     from store.errors import Refused
-    from tui.widgets.charts import curve_chart
+    from tui.commands import comebacks_text
 
     found = store_comebacks.review(record, by=by, since=since, until=until, counted=counted or None, rate=rate)
     whole = store_comebacks.as_json(found)
@@ -67,41 +67,8 @@ def comebacks(
     if as_json:
         write_json(whole)
         return
-    click.echo(
-        f"released {found.since if since else 'from the beginning'} to {found.until}: {found.released}, came back: {found.comebacks}"
-    )
-    click.echo(
-        f"counted: {', '.join(found.counted)} and outcomes not yet known; false alarms allowed: {found.rate:.0%}"
-    )
-    for day, at in found.at.items():
-        click.echo(f"  by {day} days: " + ("too young" if at is None else f"{at[0]:.1%} ({at[1]:.1%} to {at[2]:.1%})"))
-    for line in curve_chart(found.curve, found.at_risk, found.longest, 72, 12):
+    for line in comebacks_text.lines(found, comeback_words.words(record, until=until)):
         click.echo(line)
-    write_table(
-        ("finding", "count", "share", "cumulative"),
-        [(f.finding, f.count, f"{f.share:.0%}", f"{f.cumulative:.0%}") for f in found.pareto[:12]],
-    )
-    if found.groups:
-        click.echo("")
-        write_table(
-            (by or "", "released", "back", "by a year", ""),
-            [
-                (
-                    g.name,
-                    g.released,
-                    g.comebacks,
-                    "too young" if g.fraction_365 is None else f"{g.fraction_365:.0%}",
-                    g.says,
-                )
-                for g in found.groups[:30]
-            ],
-        )
-    for remark in found.remarks:
-        click.echo(remark)
-    apart = comeback_words.words(record, until=until)
-    if apart:
-        said = ", ".join(f"{w.word} {w.back}/{w.of_back} against {w.other}/{w.of_other}" for w in apart[:8])
-        click.echo(f"words that set their notes apart: {said}")
 
 
 @click.command(epilog="Example: wearline foretell")
@@ -115,17 +82,7 @@ def foretell(record: Record, since: str, until: str, as_json: bool) -> None:
 
     found = foretelling.foretell(record, since=since, until=until)
     if as_json:
-        write_json(
-            [
-                {
-                    "model": f.model, "characteristic": f.characteristic, "unit": f.unit, "returned": f.found.returned, "stayed": f.found.stayed,
-                    "area": f.found.area, "low": f.found.low, "high": f.found.high, "p": f.found.p, "adjusted": f.adjusted,
-                    "limit": f.limit, "caught": f.caught.share, "caught_low": f.caught.low, "caught_high": f.caught.high,
-                    "refused": f.refused.share, "refused_low": f.refused.low, "refused_high": f.refused.high, "says": f.says,
-                }
-                for f in found
-            ]
-        )  # fmt: skip
+        write_json(foretelling.as_json(found))
         return
     write_table(
         ("model", "characteristic", "back", "stayed", "area", "adjusted", ""),
