@@ -10,7 +10,7 @@ from store.rules import survival
 from store.rules.proportions import wilson
 from store.sqlite.engine import rows
 
-KINDS = ("model", "part", "supplier", "lot", "assembler", "finding")
+KINDS = ("lot", "part", "supplier", "model", "assembler", "finding")
 FEWEST_COMEBACKS, FEWEST_RELEASES = 5, 20
 YEAR = 365.0
 RAREST = 1e-4  # beyond this the approximation says no more than that it is rare

@@ -152,12 +152,12 @@ def _remarks(seen: Followed, groups: tuple[Group, ...], kinds: Sequence[str]) ->
         said.append(
             f"{seen.wrong} left out: by their dates they came back, or the period ended, before they were released"
         )
-    for kind in kinds:
-        looked = [g for g in groups if g.by == kind]
-        named = [g for g in looked if g.named]
-        if looked and not named:
-            said.append(f"no {kind} differs from the rest by more than chance would make")
-        said += [f"{g.name}: {g.says}" for g in named]
+    said += [f"{g.by} {g.name}: {g.says}" for g in groups if g.named]
+    alike = [kind for kind in kinds if any(g.by == kind for g in groups)]
+    alike = [kind for kind in alike if not any(g.by == kind and g.named for g in groups)]
+    if alike:
+        listed = f"{', '.join(alike[:-1])} or {alike[-1]}" if len(alike) > 1 else alike[0]
+        said.append(f"no {listed} differs from the rest by more than chance would make")
     return tuple(said)
 
 

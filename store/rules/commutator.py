@@ -7,6 +7,8 @@ surface (0 where there is none), p polish allowance on the diameter. All in one 
     worst slot after    u - [(D - D') / 2 + r]     a bound for any shape
                         u - [(D - D') / 2 + r / 2] for a round commutator off its centre
 
+The bound holds for the true smallest diameter: stations that missed it make D too large, so the advice says what it rests on.
+
 Source: geometry; the tests turn sampled profiles about their axis. The polish allowance is common practice, and the shop's.
 """
 
@@ -15,7 +17,7 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from enum import StrEnum
 from fractions import Fraction
-from math import cos, pi
+from math import ceil, cos, floor, pi
 
 from store.errors import Refused
 from store.rules.quantities import plain
@@ -35,13 +37,15 @@ class Action(StrEnum):
 
 
 ORDER = "turn, re-undercut, deburr, polish, measure again"
+RINGS_ORDER = "turn, polish, measure again"
 
 
 @dataclass(frozen=True, slots=True)
 class Found:
-    """A commutator as measured and as limited, all sizes in `unit`; None where it is not measured or not limited.
+    """A commutator (or pair of slip rings: `noun`) as measured and as limited, all sizes in `unit`; None where it is not.
 
-    `surface_failed` with a `defect` of None: something is below the surface, and nobody knows how deep.
+    `surface_failed` with a `defect` of None: something is below the surface, and nobody knows how deep. `out_of_shape`
+    says in words that ovality or taper is out of a limit of its own; `stations` how many diameters were read.
     """
 
     unit: str
@@ -61,6 +65,10 @@ class Found:
     may_undercut: bool = True
     most_runout_passes: bool = True
     least_undercut_passes: bool = True
+    most_shaft_runout_passes: bool = True
+    out_of_shape: str = ""
+    stations: int = 1
+    noun: str = "commutator"
 
 
 @dataclass(frozen=True, slots=True)
@@ -112,21 +120,21 @@ def read_share(readings: int) -> float:
     return cos(pi / readings) if readings % 2 == 0 else cos(pi / (2 * readings))
 
 
-def cuts_left(diameter: Fraction, lowest: Fraction, cut: Fraction) -> int:
-    """How many further cuts of this size remain above the limit. Raises Refused for a cut that takes nothing."""
+def cuts_left(diameter: Fraction, lowest: Fraction, cut: Fraction, equal_passes: bool = True) -> int:
+    """How many further cuts of this size remain inside the limit. Raises Refused for a cut that takes nothing."""
     if cut <= 0:
         raise Refused("a cut takes something off")
-    return max(0, int((diameter - lowest) / cut))
+    room = (diameter - lowest) / cut
+    return max(0, floor(room) if equal_passes else ceil(room) - 1)
 
 
 def advise(found: Found) -> tuple[Advice, ...]:
-    """What to do, in the order of the work; at least one line once a diameter is measured, none before.
+    """What to do, in the order of the work; at least one line once a diameter is measured.
 
-    Raises Refused for sizes that cannot be (see `clean_up`).
+    Without one: a bent shaft, and slots that are too shallow as they are. Raises Refused for sizes that cannot be (see
+    `clean_up`).
     """
-    if found.diameter is None:
-        return ()
-    if found.runout is not None:
+    if found.diameter is not None and found.runout is not None:
         clean_up(found.diameter, found.runout)
     if _bent(found):
         shaft = f"{plain(found.shaft_runout or Fraction(0))} over {plain(found.most_shaft_runout or Fraction(0))} {found.unit}"
@@ -136,6 +144,8 @@ def advise(found: Found) -> tuple[Advice, ...]:
                 f"the shaft runs out {shaft}; straighten or replace it, then measure again",
             ),
         )
+    if found.diameter is None:
+        return tuple(_shallow(found))
     if found.lowest is not None and _under(found.diameter, found):
         said = f"{plain(found.diameter)} {found.unit} is under the limit of {plain(found.lowest)} before any cut"
         return (Advice(Action.replace, said),)
@@ -145,18 +155,14 @@ def advise(found: Found) -> tuple[Advice, ...]:
         return (
             Advice(
                 Action.not_to_be_turned,
-                f"{_why_cut(found)}, and this model's commutator must not be turned: replace or rewind",
+                f"{_why_cut(found)}, and this model's {found.noun} must not be turned: replace or rewind",
             ),
         )
     return _with_a_cut(found)
 
 
 def _bent(found: Found) -> bool:
-    return (
-        found.shaft_runout is not None
-        and found.most_shaft_runout is not None
-        and found.shaft_runout > found.most_shaft_runout
-    )
+    return _is_over(found.shaft_runout, found.most_shaft_runout, found.most_shaft_runout_passes)
 
 
 def _under(diameter: Fraction, found: Found) -> bool:
@@ -165,14 +171,16 @@ def _under(diameter: Fraction, found: Found) -> bool:
 
 
 def _wants_a_cut(found: Found) -> bool:
-    """Nothing is turned that is inside its runout limit and has no surface defect."""
-    return bool(found.defect) or _runs_out(found)
+    """Nothing is turned that is inside its runout limit, in shape where that is limited, and has no surface defect."""
+    return bool(found.defect) or _runs_out(found) or bool(found.out_of_shape)
 
 
 def _runs_out(found: Found) -> bool:
-    if found.runout is None or found.most_runout is None:
-        return False
-    return found.runout > found.most_runout or (found.runout == found.most_runout and not found.most_runout_passes)
+    return _is_over(found.runout, found.most_runout, found.most_runout_passes)
+
+
+def _is_over(size: Fraction | None, most: Fraction | None, equal_passes: bool) -> bool:
+    return size is not None and most is not None and (size > most or (size == most and not equal_passes))
 
 
 def _is_shallow(slot: Fraction, found: Found) -> bool:
@@ -194,6 +202,8 @@ def _why_cut(found: Found) -> str:
         said.append(
             f"it runs out {plain(found.runout or Fraction(0))} over {plain(found.most_runout or Fraction(0))} {found.unit}"
         )
+    if found.out_of_shape:
+        said.append(found.out_of_shape)
     if found.defect:
         said.append(f"its surface is damaged {plain(found.defect)} {found.unit} deep")
     return " and ".join(said)
@@ -223,7 +233,7 @@ def _without_a_cut(found: Found) -> tuple[Advice, ...]:
         lines.append(
             Advice(
                 Action.leave,
-                f"it runs true, {plain(found.runout)} within {plain(found.most_runout)} {found.unit}, and is sound",
+                f"it runs true, {plain(found.runout)} within {plain(found.most_runout)} {found.unit}, and nothing that was measured calls for a cut",
             )
         )
     else:
@@ -233,9 +243,15 @@ def _without_a_cut(found: Found) -> tuple[Advice, ...]:
                 "nothing measured calls for a cut; without a runout and its limit nothing more can be said",
             )
         )
-    if found.undercut is not None and found.least_undercut is not None and _is_shallow(found.undercut, found):
-        lines.append(_undercut(found, found.undercut, f"the shallowest slot is {plain(found.undercut)}"))
-    return tuple(lines)
+    slots = _shallow(found)
+    return tuple(slots) if slots and not found.may_undercut else (*lines, *slots)
+
+
+def _shallow(found: Found) -> list[Advice]:
+    """The line for slots that are too shallow before any cut."""
+    if found.undercut is None or found.least_undercut is None or not _is_shallow(found.undercut, found):
+        return []
+    return [_undercut(found, f"the shallowest slot is {plain(found.undercut)}")]
 
 
 def _less(found: Found) -> str:
@@ -263,21 +279,43 @@ def _with_a_cut(found: Found) -> tuple[Advice, ...]:
         action = Action.turn_last_cut
         said += f"; another cut of this size would pass the limit of {plain(found.lowest)}"
     else:
-        left = cuts_left(turned, found.lowest, found.diameter - turned)
+        left = cuts_left(turned, found.lowest, found.diameter - turned, found.lowest_passes)
         said += f"; {left} more cut{'s' if left != 1 else ''} of this size would remain"
-    if _is_depth_unknown(found):  # the cut may have to go deeper, so no size is predicted
-        said = f"{_why_cut(found)}; the surface defect's depth is not measured and the cut must go below it: measure it first"
-        formula, predicted = f"at most {formula}, less twice the defect", []
-    lines = [Advice(action, said, formula, tuple(predicted))]
-    if found.undercut is not None and predicted:
+    unknown = _unknown(found)
+    if unknown:  # the cut may have to go deeper, so no size is predicted
+        return (Advice(action, f"{_why_cut(found)}; {unknown}{_order(found)}", f"at most {formula}"),)
+    lines = [Advice(action, f"{said}; {_rests_on(found)}", formula, tuple(predicted))]
+    if found.undercut is not None:
         slots = _after_the_cut(found, turned, runout)
+        if slots and not found.may_undercut:
+            return (replace(slots[0], because=f"{_why_cut(found)}; {slots[0].because}", predicted=()),)
         if not slots:
             slot = worst_slot(found.undercut, found.diameter, turned, runout)
             kept = (*lines[0].predicted, ("undercut-depth", slot))
             lines[0] = replace(lines[0], formula=f"{formula}; {_slot_formula(found, turned, runout)}", predicted=kept)
         lines += slots
-    lines[0] = replace(lines[0], because=f"{lines[0].because}. Order: {ORDER}")
+    lines[0] = replace(lines[0], because=lines[0].because + _order(found))
     return tuple(lines)
+
+
+def _order(found: Found) -> str:
+    return f". Order: {ORDER if found.noun == 'commutator' else RINGS_ORDER}"
+
+
+def _unknown(found: Found) -> str:
+    """What nobody measured and the depth of the cut hangs on; "" where nothing is missing."""
+    if found.runout is None:
+        return "the runout is not measured and the cut must take it out: measure it first"
+    if _is_depth_unknown(found):
+        return "the surface defect's depth is not measured and the cut must go below it: measure it first"
+    return ""
+
+
+def _rests_on(found: Found) -> str:
+    """What the predicted diameter rests on."""
+    if found.stations == 1:
+        return "the size holds if the one diameter read is the smallest there is"
+    return f"the size holds if the smallest diameter there is was among the {found.stations} read"
 
 
 def _after_the_cut(found: Found, turned: Fraction, runout: Fraction) -> list[Advice]:
@@ -289,7 +327,7 @@ def _after_the_cut(found: Found, turned: Fraction, runout: Fraction) -> list[Adv
         return []
     said = f"after the cut the worst slot would be {plain(max(slot, Fraction(0)))}"
     predicted = (("undercut-depth", max(slot, Fraction(0))),)
-    return [replace(_undercut(found, slot, said), formula=_slot_formula(found, turned, runout), predicted=predicted)]
+    return [replace(_undercut(found, said), formula=_slot_formula(found, turned, runout), predicted=predicted)]
 
 
 def _slot_formula(found: Found, turned: Fraction, runout: Fraction) -> str:
@@ -303,7 +341,7 @@ def _slot_formula(found: Found, turned: Fraction, runout: Fraction) -> str:
     )
 
 
-def _undercut(found: Found, slot: Fraction, said: str) -> Advice:
+def _undercut(found: Found, said: str) -> Advice:
     least = "" if found.least_undercut is None else f", under {plain(found.least_undercut)} {found.unit}"
     if not found.may_undercut:
         return Advice(

@@ -130,7 +130,7 @@ def test_the_demo_fault_is_found_and_the_coincidence_is_not(demo: Record) -> Non
     named = [g for g in lots.groups if g.named]
     assert [g.name for g in named] == ["CS-4417"]
     assert "more than the rest" in named[0].says
-    assert any(remark.startswith("CS-4417: more than the rest") for remark in lots.remarks)
+    assert any(remark.startswith("lot CS-4417: more than the rest") for remark in lots.remarks)
     assert not any(g.named for g in comebacks.review(demo, by="supplier", until="2026-11-27").groups)
 
 

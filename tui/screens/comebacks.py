@@ -9,12 +9,11 @@ from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.widgets import Static
 
+from store.comeback_groups import KINDS
 from tui.screens.form import Form, Line
 from tui.screens.standing import Standing
 from tui.widgets import charts
 from tui.widgets.listing import Column, Item, Listing
-
-KINDS = ("lot", "part", "supplier", "model", "assembler", "finding")
 
 
 class Comebacks(Standing):

@@ -15,7 +15,7 @@ from store.reports.pen import Pen, Seen
 from store.rules.recurrence import VARIANCE
 
 TITLE = "What comes back"
-MOST_GROUPS, MOST_FINDINGS, MOST_JOBS, MOST_FORETOLD = 12, 12, 24, 12
+MOST_GROUPS, MOST_FINDINGS, MOST_JOBS, MOST_FORETOLD, MOST_WORDS = 8, 12, 24, 12, 12
 _SOON = (
     "How soon: Kaplan and Meier's curve with log-log 95 % limits; units released lately count for as long as they were out. "
     "Below the curve stands how many were still followed."
@@ -66,7 +66,7 @@ def of(owner: Owner, seen: Seen) -> dict[str, Any]:
             for f in owner.foretold[:MOST_FORETOLD]
         ],
         "foretold-says": _foretold(owner),
-        "words": [(pen.whole(w.word, 40), f"{w.back} of {w.of_back}", f"{w.other} of {w.of_other}") for w in owner.words],
+        "words": [(pen.whole(w.word, 40), f"{w.back} of {w.of_back}", f"{w.other} of {w.of_other}") for w in owner.words[:MOST_WORDS]],
         "jobs": _jobs(pen, owner),
         "methods": list(METHODS),
         "end": "end of report",
@@ -124,7 +124,7 @@ def _pareto(pen: Pen, owner: Owner) -> dict[str, Any]:
 def _kind(pen: Pen, owner: Owner, kind: str) -> dict[str, Any]:
     groups = [g for g in owner.review.groups if g.by == kind]
     ranked = [g for g in groups if g.p is not None]
-    shown = groups[: max(MOST_GROUPS, len([g for g in ranked if g.named]))]
+    shown = groups[: max(MOST_GROUPS, len(ranked))]
     top, marks = charts.scale(max([g.high for g in shown if g.high is not None], default=0.1))
     left = len(groups) - len(shown)
     return {
@@ -134,7 +134,7 @@ def _kind(pen: Pen, owner: Owner, kind: str) -> dict[str, Any]:
         else f"No released unit of this period names its {kind}.",
         "marks": marks,
         "rows": [_group(pen, g, top) for g in shown],
-        "more": f"and {left} more, none of which is named" if left else "",
+        "more": f"and {left} more, with fewer comebacks, none of them ranked" if left else "",
     }
 
 
