@@ -130,8 +130,9 @@ def test_re_undercut_when_the_worst_slot_falls_under_its_limit() -> None:
     lines = advise(replace(BASE, diameter=F("45"), undercut=F("0.45")))
     assert [line.action for line in lines] == [Action.turn, Action.re_undercut]
     assert "the bound for any shape" in lines[1].formula
-    lines = advise(replace(BASE, diameter=F("45"), undercut=F("0.45"), may_undercut=False))
-    assert lines[1].action is Action.not_to_be_turned
+    (line,) = advise(replace(BASE, diameter=F("45"), undercut=F("0.45"), may_undercut=False))
+    assert (line.action, line.predicted) == (Action.not_to_be_turned, ())
+    assert "must not be undercut" in line.because
     assert [line.action for line in advise(replace(BASE, diameter=F("45"), undercut=F("0.6")))] == [Action.turn]
 
 

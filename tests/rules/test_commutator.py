@@ -9,7 +9,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from store.rules.commutator import Action, Found, advise
+from store.rules.commutator import Action, Found, advise, cuts_left
 
 F = Fraction
 TURNED = Found(
@@ -63,6 +63,66 @@ def test_slots_are_gone_without_a_limit() -> None:
     gone = advise(replace(TURNED, least_undercut=None, undercut=F("0.18")))
     assert [a.action for a in gone] == [Action.turn, Action.re_undercut]
     assert dict(gone[1].predicted) == {"undercut-depth": 0}
+
+
+def test_what_a_predicted_size_rests_on_is_said() -> None:
+    """D - r is a bound only if the true smallest diameter was read, and the line says so; not where no size is predicted."""
+    (line,) = advise(replace(TURNED, stations=4))
+    assert "holds if the smallest diameter there is was among the 4 read" in line.because
+    (line,) = advise(TURNED)
+    assert "holds if the one diameter read is the smallest there is" in line.because
+    (line,) = advise(replace(TURNED, surface_failed=True, defect=None))
+    assert "holds if" not in line.because
+
+
+def test_a_defect_without_a_runout_predicts_nothing() -> None:
+    """The cut must take out a runout that nobody read: no size is promised, and it is asked for."""
+    (line,) = advise(replace(TURNED, runout=None, defect=F("0.05")))
+    assert (line.action, line.predicted) == (Action.turn, ())
+    assert "the runout is not measured" in line.because
+    assert line.formula.startswith("at most ")
+
+
+def test_a_limit_that_fails_at_its_own_size_leaves_a_cut_less() -> None:
+    """43.0 with cuts of 0.25 to 42.5: two where equal passes, one where it fails; and the last cut is called one earlier."""
+    assert cuts_left(F(43), F("42.5"), F("0.25")) == 2
+    assert cuts_left(F(43), F("42.5"), F("0.25"), equal_passes=False) == 1
+    assert cuts_left(F("42.5"), F("42.5"), F("0.25"), equal_passes=False) == 0
+    twice = replace(TURNED, diameter=F("42.74"))
+    assert advise(twice)[0].action is Action.turn
+    assert advise(replace(twice, lowest_passes=False))[0].action is Action.turn_last_cut
+
+
+def test_a_shaft_at_its_limit_goes_by_its_wording() -> None:
+    """Equal passes, or fails and is straightened first; without a diameter too."""
+    at_limit = replace(TURNED, shaft_runout=F("0.08"))
+    assert advise(at_limit)[0].action is Action.turn
+    fails = replace(at_limit, most_shaft_runout_passes=False)
+    assert [line.action for line in advise(fails)] == [Action.straighten_shaft_first]
+    assert [line.action for line in advise(replace(fails, diameter=None))] == [Action.straighten_shaft_first]
+
+
+def test_without_a_diameter_slots_speak_for_themselves() -> None:
+    """Too shallow as found: re-undercut, whatever the diameter; deep enough: nothing is said."""
+    assert [line.action for line in advise(replace(TURNED, diameter=None, undercut=F("0.19")))] == [Action.re_undercut]
+    assert advise(replace(TURNED, diameter=None)) == ()
+
+
+def test_out_of_shape_is_a_reason_of_its_own() -> None:
+    """Inside its runout limit and out of an ovality limit: it is turned, and the reason is said."""
+    lines = advise(replace(TURNED, runout=F("0.02"), out_of_shape="its ovality is 0.08 mm"))
+    assert lines[0].action is Action.turn
+    assert lines[0].because.startswith("its ovality is 0.08 mm")
+
+
+def test_slots_that_may_not_be_cut_again_end_it() -> None:
+    """No turning is advised whose worst slot could not be mended after it, and no leaving where it is too shallow now."""
+    shallow = replace(TURNED, undercut=F("0.30"), may_undercut=False)
+    (line,) = advise(shallow)
+    assert (line.action, line.predicted) == (Action.not_to_be_turned, ())
+    assert line.because.startswith("it runs out 0.12 over 0.05 mm; after the cut the worst slot would be 0.12")
+    (line,) = advise(replace(shallow, undercut=F("0.19"), runout=F("0.01")))
+    assert line.action is Action.not_to_be_turned
 
 
 SIZES = st.fractions(F(0), F(1), max_denominator=1000)
