@@ -5,8 +5,9 @@ from __future__ import annotations
 import csv
 import io
 import json
+from dataclasses import asdict
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any, NamedTuple
 
 import click
 
@@ -15,6 +16,7 @@ from tui.commands.output import write_json, write_table
 
 if TYPE_CHECKING:
     from store.records import Record
+    from store.reports.owner.contents import Owner
 
 
 @click.command(epilog="Example: wearline comebacks --by lot --since 2025-01-01")
@@ -33,42 +35,94 @@ if TYPE_CHECKING:
     type=click.FloatRange(0, 1, min_open=True, max_open=True),
     help="Rate of false alarms; default: the shop's.",
 )
-@click.option("-o", "out", metavar="FILE", help="Write to a file: .csv (the groups, else the curve) or .json.")
+@click.option(
+    "-o",
+    "out",
+    metavar="FILE",
+    help="Write the owner's report: .pdf or .txt; or only figures: .csv (the groups, else the curve), .json.",
+)
+@click.option(
+    "--print", "queue", is_flag=False, flag_value="", default=None, metavar="[QUEUE]",
+    help="Hand the owner's report to a printer.",
+)  # fmt: skip
 @as_json
 @on_record
 def comebacks(
     record: Record, by: str | None, since: str, until: str, counted: tuple[str, ...], rate: float | None, out: str | None,
-    as_json: bool,
+    queue: str | None, as_json: bool,
 ) -> None:  # fmt: skip
-    """What returns of the units released in a period, how soon, and whether groups differ by more than chance."""
-    from store import comeback_words, files
-    from store import comebacks as store_comebacks
-    from store.errors import Refused
-    from tui.commands import comebacks_text
+    """What returns of the units released in a period, how soon, and whether groups differ by more than chance.
 
-    found = store_comebacks.review(record, by=by, since=since, until=until, counted=counted or None, rate=rate)
-    whole = store_comebacks.as_json(found)
-    if as_json or out is not None:
-        fields = ("word", "back", "of_back", "other", "of_other")
-        whole["words"] = [
-            {name: getattr(w, name) for name in fields} for w in comeback_words.words(record, until=until)
-        ]
+    The owner's report holds every kind of group unless --by names one.
+    """
+    asked = Asked(since, until, counted or None, rate)
     if out is not None:
-        path = Path(out)
-        if path.suffix == ".json":
-            data = json.dumps(whole, ensure_ascii=False, indent=2) + "\n"
-        elif path.suffix == ".csv":
-            data = _csv(whole["groups"] or whole["curve"])
-        else:
-            raise Refused(f"{path.name}: a review is written as .csv or .json")
-        files.write_whole(path, data.encode())
-        click.echo(path)
+        click.echo(_save(record, by, asked, Path(out)))
+    if queue is not None:
+        from store.reports.owner import issue
+
+        click.echo(issue.print_out(_owner(record, by, asked), queue))
+    if out is not None or queue is not None:
         return
     if as_json:
-        write_json(whole)
+        write_json(_figures(record, by, asked))
         return
+    from store import comeback_words
+    from store import comebacks as store_comebacks
+    from tui.commands import comebacks_text
+
+    found = store_comebacks.review(record, by=by, **asked._asdict())
     for line in comebacks_text.lines(found, comeback_words.words(record, until=until)):
         click.echo(line)
+
+
+class Asked(NamedTuple):
+    """The period, what counts and the rate of false alarms; empty or None: the shop's."""
+
+    since: str
+    until: str
+    counted: tuple[str, ...] | None
+    rate: float | None
+
+
+def _save(record: Record, by: str | None, asked: Asked, path: Path) -> Path:
+    """Write the owner's report or the figures, as the ending says."""
+    from store import files
+    from store.errors import Refused, brief
+    from store.reports.owner import issue
+    from tui.commands import comebacks_text
+
+    ending = path.suffix.lower()
+    if ending == ".pdf":
+        return issue.save(_owner(record, by, asked), path)
+    if ending == ".txt":
+        owner = _owner(record, by, asked)
+        lines = comebacks_text.lines(owner.review, owner.words, owner.foretold, jobs=True)
+        text = "\n".join([*comebacks_text.head(owner), "", *lines, ""])
+    elif ending == ".json":
+        text = json.dumps(_figures(record, by, asked), ensure_ascii=False, indent=2) + "\n"
+    elif ending == ".csv":
+        figures = _figures(record, by, asked)
+        text = _csv(figures["groups"] or figures["curve"])
+    else:
+        raise Refused(f"{brief(path.name)!r}: a review is written as .pdf, .txt, .csv or .json")
+    files.write_whole(path, text.encode())
+    return path
+
+
+def _owner(record: Record, by: str | None, asked: Asked) -> Owner:
+    from store.reports.owner import contents
+
+    return contents.gather(record, kinds=(by,) if by else (), **asked._asdict())
+
+
+def _figures(record: Record, by: str | None, asked: Asked) -> dict[str, Any]:
+    """The contract of `--json`."""
+    from store import comeback_words
+    from store import comebacks as store_comebacks
+
+    figures = store_comebacks.as_json(store_comebacks.review(record, by=by, **asked._asdict()))
+    return {**figures, "words": [asdict(word) for word in comeback_words.words(record, until=asked.until)]}
 
 
 @click.command(epilog="Example: wearline foretell")

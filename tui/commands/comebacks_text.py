@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from store.comeback_words import Word
     from store.comebacks import Review
     from store.foretelling import Foretold
+    from store.reports.owner.contents import Owner
 
 WIDTH = 80
 MOST_FINDINGS, MOST_GROUPS, MOST_JOBS, MOST_SAID, MOST_WORDS = 12, 30, 12, 8, 8
@@ -46,6 +47,13 @@ def lines(
     return [one_line(line).rstrip() for line in made]
 
 
+def head(owner: Owner) -> list[str]:
+    """Whose report it is and of which day."""
+    made = owner.at[:10]
+    title = f"What comes back{made:>{WIDTH - 15}}"
+    return [title, *_wrapped([one_line(text) for text in (owner.shop, owner.address) if text]), "-" * WIDTH]
+
+
 def _figures(found: Review) -> Iterator[str]:
     since = "from the beginning" if found.since.startswith("0001") else found.since
     yield f"released {since} to {found.until}: {found.released}, came back: {found.comebacks}"
@@ -75,7 +83,8 @@ def _groups(kind: str, groups: Sequence[Group], top: float, *, jobs: bool) -> It
     yield f"{kind:{_NAME}} {'released':>8} {'back':>5} {'a year':>9}  {scale}"
     for g in groups[:MOST_GROUPS]:
         year = "too young" if g.fraction_365 is None else f"{g.fraction_365:.1%}"
-        drawn = charts.dot(g.fraction_365, g.low, g.high, top, _DRAWN)
+        # without a comeback within the year there are no limits to draw: a dot at nought would look sure
+        drawn = charts.dot(g.fraction_365 or None, g.low, g.high, top, _DRAWN)
         yield f"{brief(g.name, _NAME):{_NAME}} {g.released:8,} {g.comebacks:5,} {year:>9}  {drawn}"
         yield from _wrapped([g.says], "  ")
         yield from _jobs(g.tags) if jobs and g.named else ()
