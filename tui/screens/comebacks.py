@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from pathlib import Path
 from typing import Any, ClassVar
 
 from textual import on
@@ -26,12 +27,15 @@ class Comebacks(Standing):
         "released lately are counted only for as long as they have been out, so young releases do not make a supplier look good. "
         "Below, one kind of group at a time (F2): each is held against all the rest, corrected for the number of groups looked at, "
         "and the verdict is in words. Under five comebacks or twenty releases nothing is ranked. Enter on a line shows the jobs "
-        "behind it. F4 sets the period and which outcomes count; both stand on the second line."
+        "behind it. F4 sets the period and which outcomes count; both stand on the second line. "
+        "F5 saves the owner's report of that period, with every kind of group, as PDF or JSON by the ending of the name; F6 hands it to the printer."
     )
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("f2", "next_kind", "next kind", tooltip="lot, part, supplier, model, assembler, finding"),
         Binding("f3", "foretell", "foretell", tooltip="which as-left readings went with comebacks"),
         Binding("f4", "period", "period"),
+        Binding("f5", "save", "save", tooltip="the owner's report as PDF, or its figures as JSON"),
+        Binding("f6", "print", "print", tooltip="hand the owner's report to the printer"),
         Binding("escape", "back", "back"),
     ]
 
@@ -64,8 +68,7 @@ class Comebacks(Standing):
         """Review."""
         self.say_where()
         self.query_one(Listing).focus()
-        by, since, until = self.by, self.since, self.until
-        counted = tuple(part.strip() for part in self.counted.split(";") if part.strip()) or None
+        by, since, until, counted = self.by, self.since, self.until, self._counts()
 
         def question() -> Any:
             from store import comebacks
@@ -206,6 +209,51 @@ class Comebacks(Standing):
             Line("counted", "counted", "workmanship;part;wear; empty: the shop's", self.counted),
         ]  # fmt: skip
         self.app.push_screen(Form("The period, and what counts", lines, keep), done)
+
+    def action_save(self) -> None:
+        """Save the owner's report; the ending says as what. The form takes the name, the work goes on behind the keys."""
+
+        def keep(values: dict[str, str]) -> Any:
+            from store.reports.owner import issue
+
+            return issue.named(Path(values["file"].strip()).expanduser())
+
+        def done(path: Any) -> None:
+            def question() -> Any:
+                from store.reports.owner import issue
+
+                return issue.save(self._owners_report(), path)
+
+            if path is not None:
+                self.ask("save", question, lambda saved: self.notify(f"saved: {saved}", markup=False))
+
+        form = Form(
+            "Save the owner's report",
+            [Line("file", "file", "", str(Path.home() / "comebacks.pdf"))],
+            keep,
+            "Ending .pdf or .json",
+        )
+        self.app.push_screen(form, done)
+
+    def action_print(self) -> None:
+        """Hand the owner's report to the printer; where there is none, say so and where the file is."""
+
+        def question() -> Any:
+            from store.reports.owner import issue
+
+            return issue.print_out(self._owners_report())
+
+        self.ask("print", question, lambda said: self.notify(said, timeout=15, markup=False))
+
+    def _owners_report(self) -> Any:
+        """What is on screen as a report: this period and what counts, every kind of group."""
+        from store.reports.owner import contents
+
+        assert self.record is not None
+        return contents.gather(self.record, since=self.since, until=self.until, counted=self._counts())
+
+    def _counts(self) -> tuple[str, ...] | None:
+        return tuple(part.strip() for part in self.counted.split(";") if part.strip()) or None
 
     def action_back(self) -> None:
         """From the jobs to the groups, then back."""

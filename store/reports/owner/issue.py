@@ -23,10 +23,14 @@ def draw(owner: Owner) -> bytes:
 
 def save(owner: Owner, path: Path) -> Path:
     """Write it to a file, as its ending says. Raises Refused."""
-    ending = path.suffix.lower()
-    if ending not in ENDINGS:
+    put(named(path), draw(owner) if path.suffix.lower() == ".pdf" else to_json(owner).encode())
+    return path
+
+
+def named(path: Path) -> Path:
+    """A file's name by which the report can be saved. Raises Refused for an ending that it has no form for."""
+    if path.suffix.lower() not in ENDINGS:
         raise Refused(f"{brief(path.name)!r}: the owner's report is saved as {' or '.join(ENDINGS)}")
-    put(path, draw(owner) if ending == ".pdf" else to_json(owner).encode())
     return path
 
 
