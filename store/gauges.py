@@ -200,32 +200,6 @@ def add(record: Record, name: str, kind: str, **values: str) -> Gauge:
     return find(record, name)
 
 
-def calibrate(
-    record: Record, name: str, *, expanded_uncertainty: str = "", k: str = "2", calibrated: str = "", due: str = "",
-    result: str = "good", note: str = "",
-) -> Gauge:  # fmt: skip
-    """Enter a calibration of a gauge. Raises Refused, NotFound."""
-    gauge = find(record, name)
-    on = calibrated or record.now()[:10]
-    from store import judgements
-
-    with record.change("gauge calibrated", gauge.name) as change:
-        calibrate_in(change, gauge.id, gauge.name, gauge.unit, expanded_uncertainty, k, on, due, result, note)
-        record.forget(change.conn, "gauges")
-        judgements.rebuild_by_gauge(record, change.conn, gauge.id)
-    return find(record, name)
-
-
-def set_repeatability(record: Record, name: str, repeatability: Fraction, why: str) -> Gauge:
-    """Keep the repeatability (a standard deviation in the gauge's unit) that a gauge study gave. Raises NotFound."""
-    gauge = find(record, name)
-    with record.change("gauge study", gauge.name) as change:
-        change.update(
-            GaugeRow, gauge.id, repeatability=quantities.plain(repeatability), note=f"{gauge.note} {why}".strip()
-        )
-    return find(record, name)
-
-
 def retire(record: Record, name: str, why: str) -> Gauge:
     """Take a gauge out of use; its readings stay. Raises NotFound, Refused without a reason."""
     gauge = find(record, name)

@@ -206,14 +206,14 @@ def test_an_ended_job_takes_no_reading(record: Record, tag: str) -> None:
 
 def test_a_new_calibration_speaks_for_what_is_read_from_then_on(record: Record, tag: str, clock: Clock) -> None:
     """Readings are as sure as the calibration in force on their day; verify agrees before and after."""
-    from store import gauges, verify
+    from store import calibrations, verify
 
     readings.add_all(
         record, tag, [Entry("brush-length", text, gauge="CAL-1") for text in ("11.4", "11.2", "11.5", "9.52")]
     )
     before = sheets.sheet(record, tag, "as-found").row("brush-length").verdict.value
     clock.move(days=30)
-    gauges.calibrate(record, "CAL-1", expanded_uncertainty="0.002", due="2027-12-01")
+    calibrations.enter(record, "CAL-1", expanded_uncertainty="0.002", due="2027-12-01")
     assert sheets.sheet(record, tag, "as-found").row("brush-length").verdict.value == before == "in doubt"
     later = shop.core(record, "99").tag
     readings.add_all(

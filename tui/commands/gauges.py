@@ -66,9 +66,9 @@ def due(record: Record, as_json: bool) -> None:
 @on_record
 def calibrate(record: Record, gauge: str, expanded: str, **values: str) -> None:
     """Enter a calibration; a bad one makes `recall` list what the gauge touched."""
-    from store import gauges as store_gauges
+    from store import calibrations
 
-    made = store_gauges.calibrate(record, gauge, expanded_uncertainty=expanded, **values)
+    made = calibrations.enter(record, gauge, expanded_uncertainty=expanded, **values)
     click.echo(f"{made.name}: {values['result']}, due {made.due or 'no date'}")
 
 

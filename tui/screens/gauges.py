@@ -141,10 +141,10 @@ class Gauges(Standing):
             return
 
         def keep(values: dict[str, str]) -> Any:
-            from store import gauges
+            from store import calibrations
 
             assert self.record is not None
-            return gauges.calibrate(self.record, gauge.name, **values)
+            return calibrations.enter(self.record, gauge.name, **values)
 
         last = gauge.calibration
         lines = [
