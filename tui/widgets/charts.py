@@ -33,16 +33,16 @@ def curve_chart(
     if not steps:
         return []
     wide, longest = max(20, width - 7), max(longest, 1.0)
-    top = height * _row(min(1.0, max(1 - s.low for s in steps)), height)
+    each = _row(max(1 - s.low for s in steps), height - 1)
     columns = [_at(steps, longest * (column + 0.5) / wide) for column in range(wide)]
     lines = []
-    for row in range(height, 0, -1):
-        low, high = top * (row - 1) / height, top * row / height
+    for row in range(height - 1, -1, -1):
+        low, high = each * (row - 0.5), each * (row + 0.5)
         cells = [
             CURVE if low <= share < high else BAND if band_low < high and band_high >= low and band_high > 0 else " "
             for share, band_low, band_high in columns
         ]
-        lines.append(f"{high:5.{0 if top >= height / 100 else 1}%} │{''.join(cells)}")
+        lines.append(f"{each * row:5.{0 if each >= 0.01 else 1}%} │{''.join(cells)}")
     lines.append(f"      └{'─' * wide}")
     marks = [(int(day * wide / longest), day, n) for day, n in at_risk if day * wide / longest <= wide - 4]
     lines.append(_marks("days", [(m, str(day)) for m, day, _ in marks], wide))
@@ -51,8 +51,8 @@ def curve_chart(
 
 
 def _row(top: float, height: int) -> float:
-    """The share that one row stands for: a round one, so that the highest finds room."""
-    return next(share for share in (0.005, 0.01, 0.02, 0.025, 0.05, 0.1, 0.2, 1.0) if share * height > top)
+    """The share from one row to the next, a round one, so that the highest finds room; a row stands for what is nearest."""
+    return next((share for share in (0.005, 0.01, 0.02, 0.05, 0.1, 0.2, 0.5) if share * height >= min(1.0, top)), 1.0)
 
 
 def _at(steps: Sequence[Point], day: float) -> tuple[float, float, float]:
