@@ -13,7 +13,8 @@ import pytest
 from store import comebacks, files, shop
 from store.errors import Refused
 from store.records import Record
-from store.reports.owner import charts, contents, issue
+from store.reports import characters
+from store.reports.owner import charts, contents, drawing, issue
 from store.rules import survival
 from tests import shop as small
 
@@ -173,3 +174,32 @@ def test_a_scale_ends_at_a_round_share(highest: float, top: float, words: str) -
     assert marks[-1][0] == 1.0
     assert found == pytest.approx(top)
     assert marks[-1][1] == words
+
+
+def test_without_a_comeback_no_dot_is_drawn(record: Record, tmp_path: Path) -> None:
+    """A dot at nought without limits would look sure; the words give Wilson's limits."""
+    past = [f"P{n},KS-100,{n},2025-01-02,released,2025-01-09,," for n in range(30)]
+    load(record, tmp_path, [*past, "B1,KS-100,1,2026-08-02,open,,P1,part"])
+    drawn = drawing.of(contents.gather(record, kinds=("model",)), characters.in_print)
+    (row,) = drawn["kinds"][0]["rows"]
+    assert (row["dot"], row["year"], row["back"]) == (None, "0%", "1")
+
+
+def test_many_jobs_are_named_as_far_as_there_is_room(record: Record, tmp_path: Path) -> None:
+    """The first 24 behind a figure, and how many more."""
+    past = [f"P{n:02},KS-100,{n},2025-01-02,released,2025-01-09,," for n in range(30)]
+    past += [f"B{n},KS-100,{n},2025-0{n % 8 + 2}-02,open,,P{n:02},part" for n in range(30)]
+    load(record, tmp_path, past)
+    _, text = read(issue.draw(contents.gather(record)))
+    behind = text[text.index("all that came back") :]
+    assert "P00 P01" in behind
+    assert "P23 and 6 more" in behind
+
+
+def test_the_line_over_the_bars_ends_at_all_of_them(demo: Record) -> None:
+    """Most first; the last row's line stands at one whole."""
+    rows = drawing.of(contents.gather(demo, until="2026-11-27"), characters.in_print)["pareto"]["rows"]
+    shares = [row["share"] for row in rows]
+    assert shares == sorted(shares, reverse=True)
+    assert rows[-1]["cumulative"] == 1.0
+    assert rows[0]["cumulative"] == rows[0]["share"]

@@ -56,13 +56,13 @@ def _drawn(
             places += [(x, y), (x, y := _cut(point[which] / top))]
         return [*places, (1.0, y)]
 
-    places = 0 if is_share and step >= 0.01 else 1
+    places = len(f"{100 * step if is_share else step:g}".partition(".")[2])
     return {
         "line": stairs(1),
         "band": [*stairs(2), *reversed(stairs(3))],
         "x": [(_cut(day / longest), str(day), below) for day, below in days],
         "y": [
-            (_cut(n * step / top), f"{n * step:.{places}%}" if is_share else f"{n * step:g}")
+            (_cut(n * step / top), f"{n * step:.{places}%}" if is_share else f"{n * step:.{places}f}")
             for n in range(int(top / step + 1e-9) + 1)
         ],
     }

@@ -112,7 +112,8 @@ def _pareto(pen: Pen, owner: Owner) -> dict[str, Any]:
     return {
         "rows": [
             {
-                "name": pen.whole(f.finding, 50), "count": str(f.count), "share": round(f.share, 4), "cumulative": round(f.cumulative, 4),
+                "name": pen.line(brief(f.finding, 60), 1_000), "count": str(f.count),
+                "share": round(f.share, 4), "cumulative": round(f.cumulative, 4),
                 "said": f"{f.cumulative:.0%}",
             }
             for f in shown
@@ -129,28 +130,30 @@ def _kind(pen: Pen, owner: Owner, kind: str) -> dict[str, Any]:
     left = len(groups) - len(shown)
     return {
         "title": f"By {kind}",
-        "note": f"{len(groups)} {_plural(kind)} seen, {len(ranked)} with enough to be held against the rest."
-        if groups
-        else f"No released unit of this period names its {kind}.",
+        "note": _seen(kind, len(groups), len(ranked), left),
         "marks": marks,
         "rows": [_group(pen, g, top) for g in shown],
-        "more": f"and {left} more, with fewer comebacks, none of them ranked" if left else "",
     }
+
+
+def _seen(kind: str, groups: int, ranked: int, left: int) -> str:
+    """How many groups of a kind there are, how many of them were ranked and how many are not shown."""
+    if not groups:
+        return f"No released unit of this period names its {kind}."
+    more = f" {left} more, with fewer comebacks, are not shown." if left else ""
+    return f"{groups} {kind}{'' if groups == 1 else 's'} seen, {ranked} with enough to be held against the rest.{more}"
 
 
 def _group(pen: Pen, group: Group, top: float) -> dict[str, Any]:
     dot = None
-    if group.fraction_365 is not None and group.low is not None and group.high is not None:
+    # without a comeback within the year there are no limits to draw: a dot at nought would look sure
+    if group.fraction_365 and group.low is not None and group.high is not None:
         dot = [round(min(1.0, place / top), 4) for place in (group.low, group.fraction_365, group.high)]
     return {
         "name": pen.whole(group.name, 30), "released": str(group.released), "back": str(group.comebacks), "dot": dot,
         "year": "too young" if group.fraction_365 is None else f"{group.fraction_365:.0%}", "says": pen.whole(group.says, 60),
         "named": group.named,
     }  # fmt: skip
-
-
-def _plural(kind: str) -> str:
-    return f"{kind}s"
 
 
 def _repeats(owner: Owner) -> str:
@@ -172,11 +175,12 @@ def _foretold(owner: Owner) -> str:
 
 
 def _jobs(pen: Pen, owner: Owner) -> list[tuple[str, str]]:
-    """The released jobs behind each named group and each finding."""
+    """The released jobs behind each named group and each finding, and behind the count of all."""
     found = owner.review
     named = [(f"{g.by} {g.name}", g.tags) for g in found.groups if g.named]
+    every = [("all that came back", found.tags)] if found.tags else []
     findings = [(f.finding, f.tags) for f in found.pareto[:MOST_FINDINGS]]
-    return [(pen.whole(name, 50), pen.whole(_tags(tags), 120)) for name, tags in [*named, *findings]]
+    return [(pen.whole(name, 50), pen.whole(_tags(tags), 120)) for name, tags in [*named, *findings, *every]]
 
 
 def _tags(tags: Sequence[str]) -> str:
