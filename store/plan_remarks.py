@@ -5,13 +5,12 @@ from __future__ import annotations
 from collections.abc import Iterator
 from fractions import Fraction
 
+from store import strip_chart
 from store.errors import Refused
-from store.rules import bars, commutator, insulation, iso_fits, quantities, running
+from store.rules import brushes, commutator, insulation, iso_fits, quantities, running
 from store.rules.limits import Verdict
 from store.rules.quantities import Quantity
-from store.sheets import Sheet, SheetRow
-
-_BLOCKS = "▁▂▃▄▅▆▇█"
+from store.sheets import Sheet
 
 
 def of_sheet(sheet: Sheet, model_bars: int | None, poles: int | None) -> Iterator[str]:
@@ -19,39 +18,35 @@ def of_sheet(sheet: Sheet, model_bars: int | None, poles: int | None) -> Iterato
     said = diagnosis(sheet)
     if said:
         yield said
-    for made in (_dial, _to_measure, _stall, _loaded, _solenoid, _insulation, _copper, _grades):
+    for made in (
+        _dial,
+        _to_measure,
+        _springs,
+        _no_load,
+        _stall,
+        _loaded,
+        _solenoid,
+        _insulation,
+        _polarization,
+        _copper,
+        _grades,
+    ):
         try:
             yield from made(sheet)
         except Refused as fault:
             yield str(fault)
-    try:
-        yield from _bars(sheet, model_bars, poles)
-    except Refused as fault:
-        yield f"bar-to-bar: {fault}"
-
-
-def row(sheet: Sheet, name: str) -> SheetRow | None:
-    """A row of a sheet by its characteristic; None where there is none."""
-    return next((one for one in sheet.rows if one.characteristic.name == name), None)
-
-
-def value(sheet: Sheet, name: str, unit: str) -> Fraction | None:
-    """The judged value of a characteristic in a unit, None where there is none."""
-    found = row(sheet, name)
-    if found is None or found.judged is None or found.judged.judgement.value is None:
-        return None
-    return quantities.convert(found.judged.judgement.value, found.judged.judgement.unit, unit)
+    yield from _bars(sheet, model_bars, poles)
 
 
 def diagnosis(sheet: Sheet) -> str:
     """What the no-load test customarily means, "" where it was not made, cannot be compared, or means nothing."""
-    amps, rpm = row(sheet, "no-load-current"), row(sheet, "no-load-speed")
+    amps, rpm = sheet.find("no-load-current"), sheet.find("no-load-speed")
     if amps is None or rpm is None or amps.limit is None or rpm.limit is None:
         return ""
     if Verdict.not_comparable in {amps.verdict, rpm.verdict}:
         return ""
     most, least = amps.limit.limit.high, rpm.limit.limit.low
-    current, speed = value(sheet, "no-load-current", "A"), value(sheet, "no-load-speed", "rpm")
+    current, speed = sheet.size("no-load-current", "A"), sheet.size("no-load-speed", "rpm")
     if most is None or least is None or current is None or speed is None:
         return ""
     least_amps = amps.limit.limit.low
@@ -64,7 +59,7 @@ def diagnosis(sheet: Sheet) -> str:
 
 
 def _dial(sheet: Sheet) -> Iterator[str]:
-    found = row(sheet, "commutator-runout")
+    found = sheet.find("commutator-runout")
     count = found.judged.judgement.count if found is not None and found.judged is not None else 0
     if count >= 4:
         share = commutator.read_share(count)
@@ -73,40 +68,88 @@ def _dial(sheet: Sheet) -> Iterator[str]:
 
 def _to_measure(sheet: Sheet) -> Iterator[str]:
     """What the plan had to do without."""
-    surface, runout = row(sheet, "commutator-surface"), row(sheet, "commutator-runout")
-    if value(sheet, "commutator-diameter", "mm") is None:
+    is_rings = sheet.job.kind == "alternator"
+    stem, part = ("slip-ring", "slip rings") if is_rings else ("commutator", "commutator")
+    whose, verb = (f"{part}'", "want") if is_rings else (f"{part}'s", "wants")
+    surface, runout, diameter = (sheet.find(f"{stem}-{one}") for one in ("surface", "runout", "diameter"))
+    depth = sheet.find("slip-ring-defect-depth" if is_rings else "surface-defect-depth")
+    if diameter is None or diameter.size("mm") is None:
         if any(found is not None and found.judged is not None for found in (surface, runout)):
-            yield "the commutator's diameter is not measured: without it no cut can be planned"
+            yield f"the {whose} diameter is not measured: without it no cut can be planned"
     else:
         if runout is not None and runout.judged is None:
-            yield "the commutator's runout is not measured: without it nothing says whether it wants a cut"
+            yield f"the {whose} runout is not measured: without it nothing says whether it {verb} a cut"
         elif runout is not None and runout.limit is None:
-            yield "no limit of the commutator's runout is entered: nothing says whether it wants a cut"
-        if value(sheet, "shaft-runout", "mm") is None:
+            yield f"no limit of the {whose} runout is entered: nothing says whether it {verb} a cut"
+        if not is_rings and sheet.size("shaft-runout", "mm") is None:
             yield "the shaft's runout is not measured: a commutator is not turned on a bent shaft"
-        if (
-            surface is not None
-            and surface.verdict is Verdict.out
-            and value(sheet, "surface-defect-depth", "mm") is None
-        ):
+        if is_rings and sheet.size("rotor-runout", "mm") is None and sheet.size("shaft-runout", "mm") is None:
+            yield "the rotor's runout is not measured: slip rings are not turned on a bent shaft"
+        is_unknown = depth is None or depth.size("mm") is None
+        if surface is not None and surface.verdict is Verdict.out and is_unknown:
             yield "the depth of the surface defect is not measured: a cut goes below it, so measure it first"
 
 
+def _springs(sheet: Sheet) -> Iterator[str]:
+    """The force of each spring at the stated position, from where it was read; a prediction, which no verdict takes up.
+
+    The stated position is the new size of the limit of `brush-spring-position`, where the manual's force holds; the
+    position where it was read and the force lost a millimetre are readings.
+    """
+    position, force = sheet.find("brush-spring-position"), sheet.find("brush-spring-force")
+    lost = sheet.size("brush-spring-loss", "N")
+    if position is None or force is None or lost is None:
+        return
+    stated, read_at = position.end("new", "mm"), position.sizes("mm")
+    if stated is None:
+        yield "no position is stated at which the springs' force holds: the new size of the limit of brush-spring-position"
+        return
+    least, most = force.end("low", "N"), force.end("high", "N")
+    for at, newton in force.sizes("N").items():
+        where = read_at.get(at, next(iter(read_at.values())) if len(read_at) == 1 else None)
+        if where is None:
+            continue
+        try:
+            made = brushes.force_at(newton, where, stated, lost)
+        except Refused as fault:
+            yield f"spring {at} at {_n(stated)} mm: {fault}"
+            continue
+        against = (
+            f", {_n(least)} N at least" if least is not None else f", {_n(most)} N at most" if most is not None else ""
+        )
+        yield (
+            f"spring {at} at the stated {_n(stated)} mm, predicted, not measured: F - (L - L') x s = {_n(newton)} - "
+            f"({_n(where)} - {_n(stated)}) x {_n(lost)} = {quantities.rounded(made, 2)} N{against}"
+        )
+
+
+def _no_load(sheet: Sheet) -> Iterator[str]:
+    if sheet.size("no-load-voltage", "V") == 0:
+        yield "no-load: a test at zero volts says nothing; is the voltage a slip?"
+
+
 def _stall(sheet: Sheet) -> Iterator[str]:
-    volts, amps = value(sheet, "stall-voltage", "V"), value(sheet, "stall-current", "A")
-    if volts is not None and amps is not None:
+    volts, amps = sheet.size("stall-voltage", "V"), sheet.size("stall-current", "A")
+    if volts == 0:
+        yield "stall: a test at zero volts says nothing; is the voltage a slip?"
+    elif volts is not None and amps is not None:
+        if amps == 0:
+            yield "stall: no current flows, so there is no resistance to reckon"
+            return
         ohms = running.resistance(volts, amps)
         yield f"stall: {_n(volts)} V / {_n(amps)} A = {quantities.rounded(ohms, 4)} ohm through the motor"
 
 
 def _loaded(sheet: Sheet) -> Iterator[str]:
-    torque, speed = value(sheet, "loaded-torque", "N.m"), value(sheet, "loaded-speed", "rpm")
+    torque, speed = sheet.size("loaded-torque", "N.m"), sheet.size("loaded-speed", "rpm")
     if torque is None or speed is None:
         return
     watts = running.power_w(float(torque), float(speed))
     said = f"loaded point: 2 pi n T = 2 pi x {_n(speed)}/60 x {_n(torque)} = {watts:.0f} W"
-    volts, amps = value(sheet, "loaded-voltage", "V"), value(sheet, "loaded-current", "A")
-    if volts is not None and amps is not None:
+    volts, amps = sheet.size("loaded-voltage", "V"), sheet.size("loaded-current", "A")
+    if volts == 0:
+        said += "; at zero volts there is no efficiency; is the voltage a slip?"
+    elif volts is not None and amps:
         share = running.efficiency(float(torque), float(speed), float(volts), float(amps))
         if share is not None:
             said += f"; efficiency {share:.0%}" + (
@@ -116,21 +159,28 @@ def _loaded(sheet: Sheet) -> Iterator[str]:
 
 
 def _solenoid(sheet: Sheet) -> Iterator[str]:
-    volts = value(sheet, "solenoid-test-voltage", "V")
+    volts = sheet.size("solenoid-test-voltage", "V")
+    if volts == 0:
+        yield "solenoid: a test at zero volts says nothing; is the voltage a slip?"
+        return
     for winding in ("pull-in", "hold-in"):
-        amps = value(sheet, f"solenoid-{winding}-current", "A")
-        ohms = value(sheet, f"solenoid-{winding}-resistance", "ohm")
-        if volts is not None and amps is not None and ohms is not None:
+        amps = sheet.size(f"solenoid-{winding}-current", "A")
+        ohms = sheet.size(f"solenoid-{winding}-resistance", "ohm")
+        if volts is None or amps is None or ohms is None:
+            continue
+        try:
             question = running.windings_agree(volts, amps, ohms)
-            if question:
-                yield f"{winding} winding: {question}"
+        except Refused as fault:
+            question = str(fault)
+        if question:
+            yield f"{winding} winding: {question}"
 
 
 def _insulation(sheet: Sheet) -> Iterator[str]:
-    read, t = value(sheet, "insulation-resistance", "Mohm"), value(sheet, "winding-temperature", "degC")
+    read, t = sheet.size("insulation-resistance", "Mohm"), sheet.size("winding-temperature", "degC")
     if read is None:
         return
-    volts = value(sheet, "insulation-test-voltage", "V")
+    volts = sheet.size("insulation-test-voltage", "V")
     tested = "the test voltage is not recorded" if volts is None else f"tested at {_n(volts)} V"
     if t is None:
         yield f"insulation {_n(read)} Mohm, {tested}; without the winding's temperature it cannot be brought to 40 degC"
@@ -141,10 +191,33 @@ def _insulation(sheet: Sheet) -> Iterator[str]:
     )
 
 
+def _polarization(sheet: Sheet) -> Iterator[str]:
+    """Ten-minute over one-minute value, circuit by circuit; both are of one temperature, so neither is corrected."""
+    one, ten = sheet.find("insulation-resistance"), sheet.find("insulation-resistance-10-min")
+    if one is None or ten is None:
+        return
+    first = one.sizes("Mohm")
+    for at, later in ten.sizes("Mohm").items():
+        where = f", circuit {at}" if len(first) > 1 else ""
+        try:
+            index = insulation.polarization_index(first.get(at), later)
+        except Refused as fault:
+            yield f"polarization index{where}: {fault}"
+            continue
+        if index is None:
+            yield f"polarization index{where}: the one-minute value is not read"
+            continue
+        weak = f"; {insulation.HIGH}" if first[at] > insulation.MEANS_LITTLE_ABOVE else ""
+        yield (
+            f"polarization index{where}: R10/R1 = {_n(later)}/{_n(first[at])} = {quantities.rounded(index, 2)}{weak}. "
+            f"{insulation.SCOPE}"
+        )
+
+
 def _copper(sheet: Sheet) -> Iterator[str]:
-    t = value(sheet, "winding-temperature", "degC")
+    t = sheet.size("winding-temperature", "degC")
     for name, unit in (("field-resistance", "ohm"), ("rotor-resistance", "ohm"), ("stator-resistance", "mohm")):
-        read = value(sheet, name, unit)
+        read = sheet.size(name, unit)
         if t is not None and read is not None:
             made = insulation.copper(read, t)
             formula = f"{_n(read)} x (234.5 + 20)/(234.5 + {_n(t)}) = {quantities.rounded(made, 3)} {unit}"
@@ -173,33 +246,17 @@ def _grades(sheet: Sheet) -> Iterator[str]:
 
 
 def _bars(sheet: Sheet, model_bars: int | None, poles: int | None) -> Iterator[str]:
-    """The strip chart round the commutator, bar 1 first, with the pattern in words."""
-    for name in ("bar-to-bar", "bar-to-bar-resistance"):
-        found = row(sheet, name)
-        if found is None or found.limit is None or found.limit.limit.high is None:
+    """The strip chart round the commutator with the pattern in words."""
+    for found in filter(None, map(sheet.find, strip_chart.CHARACTERISTICS)):
+        try:
+            chart = strip_chart.of_row(found, model_bars, poles)
+        except Refused as fault:
+            yield f"{found.characteristic.label}: {fault}"
             continue
-        read = [
-            (int(p), r) for p, r in zip(found.positions, found.readings, strict=True) if r is not None and p.isdigit()
-        ]
-        sizes = [quantities.convert(r.typed.value, r.typed.unit, found.characteristic.unit)
-                 for _, r in sorted(read, key=lambda pair: pair[0]) if r.typed.value is not None]  # fmt: skip
-        if len(sizes) < 3:
-            continue
-        chart = bars.chart(sizes, found.limit.limit.high, model_bars, poles)
-        most = max(abs(d) for d in chart.deviations)
-        yield (
-            f"{found.characteristic.label}, bars 1 to {len(sizes)}: {strip(chart.deviations)}  {chart.pattern}; "
-            f"median {quantities.plain(Fraction(quantities.rounded(chart.middle, 4)))} {found.characteristic.unit}, "
-            f"furthest {float(most):.1f} %"
-        )
-
-
-def strip(deviations: tuple[Fraction, ...]) -> str:
-    """A strip chart in one line, a mark a bar, the scale from the furthest low to the furthest high."""
-    most = max((abs(d) for d in deviations), default=Fraction(0))
-    if most == 0:
-        return _BLOCKS[3] * len(deviations)
-    return "".join(_BLOCKS[min(7, int((d / most + 1) * 4))] for d in deviations)
+        if chart is not None:
+            words = strip_chart.sentence(chart, found.characteristic.unit)
+            named = f"{found.characteristic.label}, bars {chart.numbers[0]} to {chart.numbers[-1]}"
+            yield f"{named}: {strip_chart.strip(chart)}  {words}"
 
 
 def _n(size: Fraction) -> str:

@@ -13,10 +13,10 @@ from typing import Any
 
 from sqlalchemy import Connection
 
-from store import jobs, models, people, plan_lines, plan_remarks, sheets
+from store import jobs, models, people, plan_bearings, plan_lines, plan_remarks, sheets
 from store.errors import Refused
 from store.jobs import Job
-from store.plan_lines import PlanLine, Predicted, shown
+from store.plan_line import PlanLine, Predicted, shown
 from store.plan_remarks import diagnosis
 from store.records import Record
 from store.rules import quantities
@@ -81,28 +81,41 @@ def compute(record: Record, tag: str, conn: Connection | None = None) -> Plan:
 
 def accept(record: Record, tag: str, numbers: Sequence[int] | None = None) -> tuple[ReworkLine, ...]:
     """Take lines of the plan (counted from 1; None: all that ask for work) into the rework list. Raises Refused, NotFound."""
-    plan = compute(record, tag)
-    chosen = [n for n, line in enumerate(plan.lines, start=1) if line.is_work] if numbers is None else numbers
-    for number in chosen:
-        if not 1 <= number <= len(plan.lines):
-            raise Refused(f"the plan of {plan.tag} has no line {number}; it has {len(plan.lines)}")
-        line = plan.lines[number - 1]
-        if not line.is_work:
-            raise Refused(f"line {number} says {line.action} the {line.component}: there is nothing to do")
-    listed = {(r.line.component, r.line.action, r.line.because) for r in listing(record, tag)}
-    with record.change("rework accepted", plan.tag) as change:
-        job = _open(record, change.conn, plan.tag)
+    with record.change("rework accepted", tag) as change:
+        job = _open(record, change.conn, tag)
+        change.subject = job.tag
         people.require_known(record, change.conn)
-        for number in chosen:
-            line = plan.lines[number - 1]
-            if (line.component, line.action, line.because) in listed:
+        plan = compute(record, job.tag, change.conn)
+        listed = {_same(r.line) for r in listing(record, job.tag, change.conn)}
+        for line in _chosen(plan, numbers):
+            if _same(line) in listed:
                 continue
+            listed.add(_same(line))
             kept = json.dumps([[p.name, quantities.plain(p.value), p.unit] for p in line.predicted])
             change.insert(
                 ReworkRow, job_id=job.id, component=line.component, action=line.action, because=line.because, formula=line.formula,
                 predicted=kept, at=change.at, by=change.by,
             )  # fmt: skip
     return listing(record, tag)
+
+
+def _same(line: PlanLine) -> tuple[str, str, str]:
+    return line.component, line.action, line.because
+
+
+def _chosen(plan: Plan, numbers: Sequence[int] | None) -> list[PlanLine]:
+    """The lines of these numbers; None: all that ask for work. Raises Refused."""
+    if numbers is None:
+        return [line for line in plan.lines if line.is_work]
+    chosen = []
+    for number in numbers:
+        if not 1 <= number <= len(plan.lines):
+            raise Refused(f"the plan of {plan.tag} has no line {number}; it has {len(plan.lines)}")
+        line = plan.lines[number - 1]
+        if not line.is_work:
+            raise Refused(f"line {number} says {line.action} the {line.component}: there is nothing to do")
+        chosen.append(line)
+    return chosen
 
 
 def finish(record: Record, tag: str, line_id: int, *, outcome: str = "done", note: str = "") -> tuple[ReworkLine, ...]:
@@ -142,8 +155,11 @@ def listing(record: Record, tag: str, conn: Connection | None = None) -> tuple[R
 
 
 def held(record: Record, tag: str, line: PlanLine, conn: Connection | None = None) -> tuple[Held, ...]:
-    """The predictions of a line against the as-left readings. Raises NotFound."""
-    if not line.predicted:
+    """The predictions of a line against the as-left readings; none of a part that is replaced, as its size is another's.
+
+    Raises NotFound.
+    """
+    if not line.predicted or line.action == "replace":
         return ()
     if conn is None:
         with record.read() as own:
@@ -157,20 +173,23 @@ _BOUNDS = {"undercut-depth"}
 
 
 def _held(left: Sheet, predicted: Predicted) -> Held:
-    row = plan_remarks.row(left, predicted.name)
-    value = plan_remarks.value(left, predicted.name, predicted.unit)
-    said = f"predicted {shown(predicted.value)} {predicted.unit}"
-    if row is None or value is None or row.judged is None:
+    row, unit = left.find(predicted.name), predicted.unit
+    said = f"predicted {shown(predicted.value)} {unit}"
+    value = None if row is None else row.size(unit)
+    if row is None or row.judged is None or value is None:
         return Held(predicted, None, False, f"{said}, not measured as left")
+    loosest = plan_bearings.loosest(left, predicted.name, unit)  # a clearance is predicted at its loosest
+    value = value if loosest is None else loosest
     variance = row.judged.judgement.variance
-    by = quantities.scale(row.judged.judgement.unit, predicted.unit)
+    by = quantities.scale(row.judged.judgement.unit, unit)
     allowed = Fraction(0) if variance is None else 4 * variance * by * by
-    is_met = predicted.name in _BOUNDS and value >= predicted.value
-    if is_met:
+    if predicted.name in _BOUNDS and value >= predicted.value:
         return Held(predicted, value, False, f"{said} at least, left {shown(value)}: as predicted")
     beyond = (value - predicted.value) ** 2 > allowed
-    difference = quantities.plain(Fraction(quantities.rounded(abs(value - predicted.value), 4)))
-    how = "within the gauge's uncertainty" if not beyond else "beyond the gauge's uncertainty"
+    difference = shown(abs(value - predicted.value))
+    how = "beyond the gauge's uncertainty" if beyond else "within the gauge's uncertainty"
+    if variance is None:
+        how = "the gauge's uncertainty is not known"
     return Held(predicted, value, beyond, f"{said}, left {shown(value)}: {difference} apart, {how}")
 
 

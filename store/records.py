@@ -22,7 +22,7 @@ from store.sqlite.faults import unusable
 from store.sqlite.places import share
 
 APPLICATION_ID = 0x574C494E
-HEAD = "0005"
+HEAD = "0006"
 SHOP = "shop"
 Now = Callable[[], datetime]
 Kept = TypeVar("Kept")

@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterable
 from dataclasses import dataclass
+from fractions import Fraction
 
 from sqlalchemy import Connection
 
@@ -18,6 +19,7 @@ from store.judgements import Judged
 from store.limit_sheets import SheetLimit
 from store.readings import Reading
 from store.records import Record
+from store.rules import quantities
 from store.rules.limits import Verdict
 
 Standing = dict[str, int]
@@ -49,6 +51,22 @@ class SheetRow:
         """Whether the limit sheet asks for this at this stage, or somebody has measured it (computed ones need a limit)."""
         return self.limit is not None or (self.judged is not None and not self.characteristic.derive)
 
+    def size(self, unit: str) -> Fraction | None:
+        """The judged value in a unit; None where there is none. Raises Refused for a unit of another quantity."""
+        if self.judged is None or self.judged.judgement.value is None:
+            return None
+        return quantities.convert(self.judged.judgement.value, self.judged.judgement.unit, unit)
+
+    def sizes(self, unit: str) -> dict[str, Fraction]:
+        """The values read, by position, in a unit. Raises Refused for a unit of another quantity."""
+        taken = [(r.position, r.typed) for r in self.readings if r is not None]
+        return {at: quantities.convert(t.value, t.unit, unit) for at, t in taken if t.value is not None}
+
+    def end(self, end: str, unit: str) -> Fraction | None:
+        """The `low`, `high` or `new` of the limit in a unit; None where there is none. Raises Refused."""
+        kept: Fraction | None = None if self.limit is None else getattr(self.limit.limit, end)
+        return None if kept is None or self.limit is None else quantities.convert(kept, self.limit.limit.unit, unit)
+
 
 @dataclass(frozen=True, slots=True)
 class Sheet:
@@ -64,6 +82,15 @@ class Sheet:
             if row.characteristic.name == characteristic:
                 return row
         raise KeyError(characteristic)
+
+    def find(self, characteristic: str) -> SheetRow | None:
+        """The row of one characteristic, None where this machine has none."""
+        return next((row for row in self.rows if row.characteristic.name == characteristic), None)
+
+    def size(self, characteristic: str, unit: str) -> Fraction | None:
+        """The judged value of a characteristic in a unit; None where there is none."""
+        row = self.find(characteristic)
+        return None if row is None else row.size(unit)
 
     @property
     def standing(self) -> Standing:

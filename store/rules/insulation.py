@@ -5,16 +5,20 @@ from __future__ import annotations
 from fractions import Fraction
 
 from store.errors import Refused
+from store.rules.quantities import plain
 
 COPPER = Fraction("234.5")
 SCOPE = "IEEE 43 is written for machines of 750 W and more and excludes smaller ones; used here for comparison only"
+MEANS_LITTLE_ABOVE = Fraction(5000)
+HIGH = "above 5000 Mohm after one minute the index says little (IEEE 43)"
+"""From memory of IEEE 43; the one-minute value in Mohm, as read."""
 
 
 def copper(resistance: Fraction, at_degc: Fraction, reference_degc: Fraction = Fraction(20)) -> Fraction:
     """Copper resistance at the reference temperature: R (234.5 + t_ref)/(234.5 + t). Raises Refused at or below -234.5 degC."""
     for degc in (at_degc, reference_degc):
         if degc <= -COPPER:
-            raise Refused(f"copper has no resistance to reckon with at {degc} degC; is the temperature a slip?")
+            raise Refused(f"copper has no resistance to reckon with at {plain(degc)} degC; is the temperature a slip?")
     if resistance < 0:
         raise Refused("a resistance is not below zero")
     return resistance * (COPPER + reference_degc) / (COPPER + at_degc)

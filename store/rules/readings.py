@@ -64,6 +64,8 @@ _NUMBER = re.compile(
     )\s*(?P<unit>[^\s\d.,+/-][^\s]{0,15})?\s*\Z""",
     re.VERBOSE,
 )
+_COLDEST = Fraction(-469, 2)
+"""degC; at -234.5 the resistance of copper would be nothing, and no sum over it can be made."""
 _NOT_MEASURED = re.compile(r"(?:not measured|n/?m)\b[\s:,;-]*(?P<why>.*)\Z", re.IGNORECASE | re.DOTALL)
 _ATTRIBUTE = re.compile(
     r"(?P<mark>pass|p|ok|fail|f|cannot judge|cannot be judged|c)\b[\s:,;-]*(?P<detail>.*)\Z", re.IGNORECASE | re.DOTALL
@@ -121,6 +123,8 @@ def _number(text: str, quantity: Quantity, unit: str, signed: bool) -> Typed:
     value, places = _value(found, text)
     if value < 0 and not signed and quantity not in _NEGATIVE:
         raise ReadingRefused(f"{brief(text, 40)}: a {quantity} is not below zero; does the gauge send deviations?")
+    if quantity is Quantity.temperature and quantities.convert(value, symbol, "degC") <= _COLDEST:
+        raise ReadingRefused(f"{brief(text, 40)}: nothing at the bench is so cold; is the temperature a slip?")
     if quantity is Quantity.count and value.denominator != 1:
         raise ReadingRefused(f"{brief(text, 40)}: a count is a whole number")
     return Typed(text, Mark.number, value, symbol, places, "")
