@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from fractions import Fraction
 from io import BytesIO
 from pathlib import Path
 
@@ -145,3 +146,69 @@ def test_no_line_that_there_is_not(record: Record, tmp_path: Path) -> None:
     with pytest.raises(Refused, match="has no line 9"):
         plans.accept(record, tag, [9])
     assert jobs.find(record, tag).is_open
+
+
+def test_a_line_is_listed_once_however_often_it_is_accepted(record: Record, tmp_path: Path) -> None:
+    """Twice in one go, and again."""
+    tag = core(record, tmp_path, "44.10")
+    assert len(plans.accept(record, tag, [1, 1])) == 1
+    assert len(plans.accept(record, tag, [1])) == 1
+
+
+def test_a_part_that_is_replaced_is_held_against_nothing(record: Record, tmp_path: Path) -> None:
+    """Called before the cut and replaced: the new armature's diameter is not held against what the old one would have had."""
+    tag = core(record, tmp_path, "42.62")
+    (entry,) = plans.accept(record, tag)
+    assert entry.line.action == "replace"
+    readings.add_all(record, tag, [Entry("commutator-diameter", "45.0", "as-left")] * 4)
+    assert plans.held(record, tag, entry.line) == ()
+
+
+def test_without_a_known_uncertainty_it_is_said_so(record: Record, tmp_path: Path) -> None:
+    """No gauge named: any difference is marked, and the words do not speak of a gauge's uncertainty that nobody knows."""
+    tag = core(record, tmp_path, "44.10")
+    (entry, *_) = plans.accept(record, tag)
+    readings.add_all(record, tag, [Entry("commutator-diameter", "43.95", "as-left")] * 4)
+    held, *_ = plans.held(record, tag, entry.line)
+    assert held.beyond
+    assert held.says == "predicted 43.96 mm, left 43.95: 0.01 apart, the gauge's uncertainty is not known"
+
+
+def test_a_clearance_is_held_at_its_loosest(record: Record, tmp_path: Path) -> None:
+    """Predicted at the loosest, so held against largest bore less smallest journal, whichever end governs the verdict."""
+    tag = core(record, tmp_path, "45")
+    readings.add(record, tag, "as-left", "drive-end-bore", "14.00")
+    readings.add(record, tag, "as-left", "drive-end-journal", "13.975")
+    line = plans.PlanLine(
+        "bearings", "replace-bushing", "", "", (plans.Predicted("drive-end-clearance", Fraction("0.025"), "mm"),)
+    )
+    (held,) = plans.held(record, tag, line)
+    assert (held.left, held.beyond) == (Fraction("0.025"), False)
+
+
+def test_the_plan_follows_the_revision_of_the_job(record: Record, tmp_path: Path) -> None:
+    """A limit that moves: the job is planned under the revision it stands on, and anew once it is brought to the new one."""
+    tag = core(record, tmp_path, "42.64")
+    assert actions(record, tag) == [("commutator", "turn-last-cut")]
+    small_change = "model,characteristic,stage,unit,new,low,high,at_limit,count,source\n"
+    (tmp_path / "moved.csv").write_text(
+        small_change + 'KS-100,commutator-diameter,both,mm,45,42.6,,pass,4,"Sheet 12, rev C"\n'
+    )
+    files.load(record, [tmp_path / "moved.csv"])
+    assert actions(record, tag) == [("commutator", "turn-last-cut")]
+    jobs.move_to_revision(record, tag)
+    assert actions(record, tag) == [("commutator", "replace")]
+
+
+def test_an_ended_job_keeps_its_list_and_still_shows_its_plan(record: Record, tmp_path: Path) -> None:
+    """What was planned can be read; nothing more is accepted or ended."""
+    from store import releases
+
+    tag = core(record, tmp_path, "44.10")
+    (entry, *_) = plans.accept(record, tag, [1])
+    releases.scrap(record, tag, "cracked")
+    assert actions(record, tag)
+    with pytest.raises(Refused, match="its rework list stays as it is"):
+        plans.accept(record, tag)
+    with pytest.raises(Refused, match="its rework list stays as it is"):
+        plans.finish(record, tag, entry.id)
