@@ -8,7 +8,7 @@ from __future__ import annotations
 from typing import Any
 
 from store.errors import brief
-from store.reports import wear_rule, wording
+from store.reports import strip, wear_rule, wording
 from store.reports.characters import breakable
 from store.reports.contents import WearRule
 from store.reports.figures import is_number, split
@@ -42,7 +42,7 @@ def row(pen: Pen, one: wording.Row, line_mm: float) -> dict[str, Any]:
         (weight, pen.block(text, sum(COLUMNS_MM) - RIGHT_MM, SAYS_PT, bold=weight == "loud"))
         for weight, text in one.says
     ]
-    told = stacked(*(block.height_mm for _, block in says))
+    told = None if one.strips else stacked(*(block.height_mm for _, block in says))
     height = highest(
         stacked(label.height_mm, _of(datum)),
         stacked(tall(len(one.limits), FIGURE_PT), _of(quiet)),
@@ -64,6 +64,7 @@ def row(pen: Pen, one: wording.Row, line_mm: float) -> dict[str, Any]:
         "rule": None if one.rule is None else _rule(pen, one.rule),
         "gauge": gauge.text,
         "says": [(weight, block.text) for weight, block in says],
+        "strips": [{"words": strip.words(made, stage), "drawing": strip.svg(made)} for stage, made in one.strips],
         "height": _inset(height, TOP_MM + (0.0 if one.says else BOTTOM_MM)),
         "says-height": _inset(told, SAYS_TOP_MM + BOTTOM_MM),
         "together": (height or 0.0) + (told or 0.0) < _TOGETHER_MM if height and told is not None else _is_short(one),

@@ -8,7 +8,7 @@ from math import sqrt
 
 from sqlalchemy import Connection
 
-from store import gauges, jobs, limit_sheets, models, plans, readings, sheets, shop, verdicts
+from store import gauges, jobs, limit_sheets, models, plans, readings, sheets, shop, strip_chart, verdicts
 from store.catalogue import Catalogue, catalogue
 from store.errors import Refused
 from store.jobs import Job
@@ -55,13 +55,14 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
     names = dict(rows(conn, "SELECT initials, name FROM person"))
     sheet = None if job.revision_id is None else limit_sheets.by_revision(record, conn, job.revision_id)
     moments = sorted(r.at for r in taken)
+    unit = _unit(conn, job)
     return contents.Report(
         number="",
         issued=_last_change(conn, job, moments),
         shop=contents.Shop(shop.kept(conn, "shop"), shop.kept(conn, "address")),
         tag=job.tag,
         outcome=job.outcome,
-        unit=_unit(conn, job),
+        unit=unit,
         received=job.taken_in,
         customer=job.customer,
         application=job.application,
@@ -76,7 +77,7 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         decision=None
         if sheet is None
         else contents.Decision(sheet.revision.decision.value, RULES[sheet.revision.decision]),
-        characteristics=tuple(_characteristics(catalogue(record, conn), job, ever, found, left)),
+        characteristics=tuple(_characteristics(catalogue(record, conn), job, unit, ever, found, left)),
         findings=_findings(conn, job),
         concessions=_concessions(conn, job, names),
         plan=_plan(record, conn, job),
@@ -172,7 +173,7 @@ def _gauges(record: Record, conn: Connection, taken: Iterable[Reading]) -> tuple
 
 
 def _characteristics(
-    known: Catalogue, job: Job, ever: dict[int, Reading], found: Sheet, left: Sheet
+    known: Catalogue, job: Job, unit_of: contents.Unit, ever: dict[int, Reading], found: Sheet, left: Sheet
 ) -> Iterable[contents.Characteristic]:
     by_stage = {sheet.stage: {row.characteristic.name: row for row in sheet.rows} for sheet in (found, left)}
     order = {row.characteristic.name: row for sheet in (left, found) for row in sheet.rows}
@@ -180,7 +181,7 @@ def _characteristics(
     for name in sorted(order, key=place.__getitem__):
         one = order[name].characteristic
         results = tuple(
-            _result(job, stage, row, ever)
+            _result(job, unit_of, stage, row, ever)
             for stage, sheet in by_stage.items()
             if (row := sheet.get(name)) is not None and row.is_expected
         )
@@ -191,7 +192,7 @@ def _characteristics(
             )  # fmt: skip
 
 
-def _result(job: Job, stage: str, row: SheetRow, ever: dict[int, Reading]) -> contents.Result:
+def _result(job: Job, unit_of: contents.Unit, stage: str, row: SheetRow, ever: dict[int, Reading]) -> contents.Result:
     said = verdicts.of_row(row)
     judgement = row.judged.judgement if row.judged else None
     limit = row.limit
@@ -220,6 +221,7 @@ def _result(job: Job, stage: str, row: SheetRow, ever: dict[int, Reading]) -> co
         limit=None if limit is None else _limit(job, row),
         readings=tuple(_reading(r, unit, exact, ever) for r in row.readings if r is not None),
         wear_rule=_wear_rule(row, exact),
+        remarks=tuple(filter(None, (strip_chart.said(row, unit_of.bars, unit_of.poles),))),
     )
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 
 from store.errors import brief
-from store.reports import figures, sections, wear_rule, wording
+from store.reports import figures, sections, strip, wear_rule, wording
 from store.reports.characters import in_plain, one_line, width
 from store.reports.contents import Report
 from store.reports.drawing import unit_line
@@ -114,6 +114,8 @@ def _row(row: wording.Row) -> Lines:
     gauge = f"gauge {row.gauge}" if row.gauge else ""
     method = "; ".join(part for part in (row.datum, gauge, ", ".join(row.limit_quiet)) if part)
     made += _wrapped(method, "  ", "  ") if method else []
+    for stage, one in row.strips:
+        made += _wrapped(f"{stage}, bars {one.first} to {one.last}: {strip.figures(one)}  (4 even)", "  ", "    ")
     for weight, text in row.says:
         made += _wrapped(("> " if weight == "loud" else "") + text, "  ", "    ")
     return [*made, ""]

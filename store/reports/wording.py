@@ -7,8 +7,9 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from store.reports import figures
+from store.reports import figures, strip
 from store.reports.contents import Characteristic, Limit, Reading, Report, Result, WearRule
+from store.reports.strip import Strip
 
 TITLES = {
     "open": "Tolerance report",
@@ -32,7 +33,10 @@ class Cell:
 
 @dataclass(frozen=True, slots=True)
 class Row:
-    """One characteristic. `limits` are (min or max, figure) lines, `says` (loud, plain or quiet; sentence) lines."""
+    """One characteristic. `limits` are (min or max, figure) lines, `says` (loud, plain or quiet; sentence) lines.
+
+    `strips` are the strip charts of bar-to-bar readings, by stage.
+    """
 
     label: str
     unit: str
@@ -44,6 +48,7 @@ class Row:
     left: Cell | None
     rule: WearRule | None
     says: tuple[tuple[str, str], ...]
+    strips: tuple[tuple[str, Strip], ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -122,6 +127,7 @@ def _row(report: Report, one: Characteristic, sources: Sources) -> Row:
         left=_cell(left, unit),
         rule=drawn,
         says=_says(report, one),
+        strips=tuple((STAGE_WORDS[r.stage], made) for r in one.results if (made := strip.of(r)) is not None),
     )
 
 
