@@ -124,3 +124,12 @@ def test_a_refused_value_stays_in_its_cell() -> None:
     assert (keying.rows[0].cells[0].text, keying.rows[0].cells[0].why) == ("1,234", "ambiguous")
     keying.go(0, 0)
     assert feed(keying, "1.234\n") == [Submitted(0, 0, "1.234")]
+
+
+def test_a_finished_sheet_can_be_gone_back_into() -> None:
+    """By the mouse as by an arrow: the cursor stands on the cell that was meant."""
+    keying = sheet(2, 1)
+    feed(keying, "1\n2\n3\n")
+    assert keying.at is None
+    keying.go(1, 0)
+    assert keying.at == (1, 0)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import sys
 from typing import TYPE_CHECKING
 
 import click
@@ -36,13 +37,15 @@ def read(
     """Add readings to job TAG, as many as are given or none; a refused one refuses all.
 
     A value is typed as the bench writes it: 11.4, .448in, 7/16, 1 3/16, pass, "fail bars 4-5", "not measured no tool".
-    Write -- before a value that begins with a minus.
+    Write -- before a value that begins with a minus. The caution of a test under power comes before its first value on a
+    job; at a terminal it asks whether to go on.
     """
-    from store import readings, slips
+    from store import cautions, readings, slips
 
     if position is not None and len(values) > 1:
         raise click.UsageError("--at takes one value")
     entries = [readings.Entry(characteristic, text, stage, position, unit, gauge, note, why) for text in values]
+    _warn(cautions.first(record, tag, characteristic))
     answers = readings.add_all(record, tag, entries)
     last = answers[-1]
     if as_json:
@@ -53,6 +56,14 @@ def read(
     for answer in answers:
         for question in slips.questions(record, tag, answer.reading):
             click.echo(f"look again: {question}", err=True)
+
+
+def _warn(caution: str) -> None:
+    """Show a caution before anything is written; somebody who sits there says that it was read."""
+    if caution:
+        click.echo(f"CAUTION  {caution}", err=True)
+        if sys.stdin.isatty() and sys.stderr.isatty():
+            click.confirm("read; go on", err=True, abort=True)
 
 
 def _added(answer: Accepted) -> dict[str, str]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from textwrap import wrap
 from typing import Any
@@ -61,9 +61,9 @@ def explanation(known: Known, keying: Keying, room: Size, tones: Mapping[str, st
             Said(0, f"no place for: {', '.join(keying.aside[-6:])}  (every asked cell has its reading)", "bold")
         )
     if keying.at is None:
-        said.append(
-            Said(0, "Every row that is asked for has its readings. Arrows move; F2 the other stage, F9 the report.")
-        )
+        refused = _refused_elsewhere(known, keying)
+        through = "Every row that is asked for has its readings. Arrows move; F2 the other stage, F9 the report."
+        said += refused or [Said(0, through)]
         return laid_out(said, room, tones)
     row = known.sheet.rows[keying.at[0]]
     cells = keying.rows[keying.at[0]].cells
@@ -99,7 +99,8 @@ def _refused_elsewhere(known: Known, keying: Keying) -> list[Said]:
         for column, cell in enumerate(row.cells):
             if cell.state is State.refused and (n, column) != keying.at:
                 label = known.sheet.rows[n].characteristic.label
-                return [Said(1, f"!  {label} {cell.position}, {cell.text}: {cell.why}", "loud")]
+                is_caution = cell.why.startswith("CAUTION")
+                return [Said(1, f"!  {label} {cell.position}, {cell.text}: {cell.why}", "loud", is_whole=is_caution)]
     return []
 
 
@@ -167,6 +168,19 @@ def laid_out(said: list[Said], room: Size, tones: Mapping[str, str]) -> Text:
         for line in kept:
             text.append(f"{line}\n", style=_style(one.tone, tones))
     return text
+
+
+def cautions_shown(cautions: Iterable[str], drawn: str, room: Size) -> set[str]:
+    """Those cautions that stand in what was drawn: whole, or as much as there is room for."""
+    if "CAUTION" not in drawn:
+        return set()
+    shown, found = " ".join(drawn.split()), set()
+    for caution in filter(None, cautions):
+        words = f"CAUTION {' '.join(caution.split())}"
+        is_cut_short = words[:24] in shown and len(wrap(words, max(20, room.width))) > room.height - 2
+        if words in shown or is_cut_short:
+            found.add(caution)
+    return found
 
 
 def _style(tone: str, tones: Mapping[str, str]) -> Style:

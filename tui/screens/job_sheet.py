@@ -22,6 +22,7 @@ from tui.writer import Order
 
 OTHER = {"as-found": "as-left", "as-left": "as-found"}
 LOOKED_AGAIN = "looked again: it is right"
+TYPE_AGAIN = "Then type the value again."
 
 
 class JobSheet(Vertical):
@@ -53,6 +54,7 @@ class JobSheet(Vertical):
         self.precedents: dict[str, Any] = {}
         self.to_look: dict[str, None] = {}
         self.asked: Counter[str] = Counter()
+        self.cautioned: set[str] = set()
         self.waiting = 0
         self.version: Any = None
         self.every_row = False
@@ -141,7 +143,24 @@ class JobSheet(Vertical):
     def typed(self, message: ReadingSheet.Typed) -> None:
         """Hand what was typed to the writer."""
         for given in message.submitted:
-            self._order(given.row, given.column, given.text, given.why)
+            caution = self._caution_unseen(given.row, given.text)
+            if caution:
+                self.grid.answered(
+                    given.row, given.column, State.refused, given.text, f"CAUTION  {caution} {TYPE_AGAIN}"
+                )
+            else:
+                self._order(given.row, given.column, given.text, given.why)
+
+    def _caution_unseen(self, row: int, text: str) -> str:
+        """The caution that must be on the screen before this value goes in, as a burst runs ahead of what is seen; or ""."""
+        if self.sheet is None or text.casefold().startswith("not measured"):
+            return ""
+        from store import cautions
+
+        caution = cautions.before(self.sheet.rows[row].characteristic)
+        if not caution or caution in self.cautioned or caution in cautions.seen(self.sheet.rows):
+            return ""
+        return caution
 
     def _order(self, row: int, column: int, text: str, why: str) -> None:
         from store.readings import Entry
@@ -239,7 +258,10 @@ class JobSheet(Vertical):
         if self.sheet is None:
             return Text()
         known = job_explained.Known(self.sheet, self.questions, self.gauges, self.precedents)
-        return job_explained.explanation(known, self.grid.keying, room, self.app.theme_variables)
+        drawn = job_explained.explanation(known, self.grid.keying, room, self.app.theme_variables)
+        about = {row.characteristic.caution for row in self.sheet.rows}
+        self.cautioned |= job_explained.cautions_shown(about, drawn.plain, room)
+        return drawn
 
     def action_stage(self) -> None:
         """As found or as left."""

@@ -180,8 +180,11 @@ class Keying:
         self._touch()
         if not self.rows[row].cells:
             return []
-        place = (row, min(column, len(self.rows[row].cells) - 1))
-        return self._close(lambda: place)
+        place, was_through = (row, min(column, len(self.rows[row].cells) - 1)), self.at is None
+        made = self._close(lambda: place)
+        if was_through:
+            self.at = place
+        return made
 
     def answered(self, row: int, column: int, state: State, text: str, why: str = "") -> None:
         """What the writer said of a cell. A cell that was typed over since keeps the newer text."""
