@@ -11,6 +11,8 @@ import pytest
 from store.errors import Refused
 from store.rules import commutator
 from store.rules.commutator import Action, Found, advise
+from store.rules.quantities import Quantity
+from store.rules.readings import parse
 
 F = Fraction
 POINTS = 3600
@@ -142,3 +144,29 @@ def test_bad_input_is_one_clear_line() -> None:
         with pytest.raises(Refused) as caught:
             commutator.clean_up(F(diameter), F(runout), F(defect))
         assert "\n" not in str(caught.value)
+
+
+def test_stations_that_miss_the_smallest_diameter_promise_too_much() -> None:
+    """Geometry: four lobes of 0.05, read at two crests 90 degrees apart, lose 0.05 more than is said; so the line says it.
+
+    With the smallest diameter among the readings the bound holds.
+    """
+    rho = 15 + 0.025 * np.cos(4 * ANGLES)
+    across = rho + np.roll(rho, POINTS // 2)
+    runout = F(float(rho.max() - rho.min()))
+    missed = min(F(float(across[n])) for n in (0, POINTS // 4))
+    assert float(commutator.clean_up(missed, runout)) == pytest.approx(2 * rho.min() + 0.05, abs=1e-9)
+    assert float(commutator.clean_up(F(float(across.min())), runout)) <= 2 * rho.min() + 1e-9
+    (line,) = advise(Found("mm", missed, runout, most_runout=F("0.01"), stations=2))
+    assert "if the smallest diameter there is was among the 2 read" in line.because
+
+
+def test_an_undercut_as_printed() -> None:
+    """1/32 in is asked for, 0.025 to 0.032 in is printed as its bounds (several TMs, read): deep enough, and a slot less is not."""
+    slot = parse("1/32", Quantity.length, "in").value
+    assert slot == F("0.03125")
+    found = Found("in", F("1.7"), F("0"), undercut=slot, most_runout=F("0.002"), least_undercut=F("0.025"))
+    assert [line.action for line in advise(found)] == [Action.leave]
+    from dataclasses import replace
+
+    assert advise(replace(found, undercut=F("0.0249")))[1].action is Action.re_undercut

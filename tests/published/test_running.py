@@ -3,13 +3,18 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from math import pi
 
 import pytest
 
 from store.errors import Refused
 from store.rules import running
-from store.rules.quantities import convert
+from store.rules.at_voltage import judge_at
+from store.rules.limits import Limit, Measured, Rule, Verdict, judge
+from store.rules.quantities import Quantity, convert
+from store.rules.readings import parse
 from store.rules.running import Comparable
+from store.rules.statistic import Statistic
 
 F = Fraction
 
@@ -53,9 +58,48 @@ def test_prony_brake() -> None:
     assert running.power_w(torque, 1800) / 745.69987158227 == pytest.approx(3.427, abs=5e-4)
 
 
+def test_prony_brake_as_the_book_reckons_it() -> None:
+    """The same with the book's pi of 3.14: 113,040 ft.lbf a minute (read)."""
+    watts = running.power_w(float(convert(F(20) * F(1, 2), "lbf.ft", "N.m")), 1800)
+    foot_pounds_a_minute = watts * 60 / float(convert(F(1), "lbf.ft", "N.m"))
+    assert foot_pounds_a_minute * 3.14 / pi == pytest.approx(113_040, abs=0.5)
+
+
 def test_pinion_clearance_by_its_datum() -> None:
-    """23/64 +- 1/32 in is 0.328 to 0.390 in (TM 5-4210-230-14&P-1, TM 9-6115-604-34, read): another datum, another limit."""
-    assert (round(float(F(23, 64) - F(1, 32)), 3), round(float(F(23, 64) + F(1, 32)), 3)) == (0.328, 0.391)
+    """To the stop 0.010 to 0.140 in, to the housing 0.328 to 0.390 in (TM 5-4210-230-14&P-1, TM 9-6115-604-34, read)."""
+    to_stop, to_housing = (
+        Limit("in", low=F(low), high=F(high), rule=Rule.simple)
+        for low, high in (("0.010", "0.140"), ("0.328", "0.390"))
+    )
+    read = [Measured("1", parse("23/64", Quantity.length, "in"))]
+    assert judge(read, Statistic.each, to_housing).verdict is Verdict.in_
+    assert judge(read, Statistic.each, to_stop).verdict is Verdict.out
+
+
+@pytest.mark.parametrize(
+    ("specified", "most_amps", "least_rpm"), [("23.0", 90, 7000), ("11.5", 130, 7000), ("24", 50, 6500)]
+)
+def test_no_load_limits_as_printed(specified: str, most_amps: int, least_rpm: int) -> None:
+    """TM 9-2920-242-35 para 38, TM 5-3895-382-24, TM 9-2920-243-34 para 3-27 (all read; the last prints no volts: 24 V unit).
+
+    At the printed volts a result at its limit is in and one past it out; a twentieth more volts give a twentieth more speed.
+    """
+    volts = [Measured("1", parse(specified, Quantity.voltage, "V"))]
+    more = [Measured("1", parse(str(float(specified) * 1.05), Quantity.voltage, "V"))]
+    at = Limit("V", new=F(specified), low=F(0), high=F(100))
+    amps, rpm = Limit("A", high=F(most_amps), rule=Rule.simple), Limit("rpm", low=F(least_rpm), rule=Rule.simple)
+
+    def current(read: int) -> Verdict:
+        taken = [Measured("1", parse(str(read), Quantity.current, "A"))]
+        return judge_at("no-load-current", taken, Statistic.largest, amps, volts, at).verdict
+
+    def speed(read: int, tested: list[Measured]) -> Verdict:
+        taken = [Measured("1", parse(str(read), Quantity.speed, "rpm"))]
+        return judge_at("no-load-speed", taken, Statistic.smallest, rpm, tested, at).verdict
+
+    assert (current(most_amps), current(most_amps + 1)) == (Verdict.in_, Verdict.out)
+    assert (speed(least_rpm, volts), speed(least_rpm - 1, volts)) == (Verdict.in_, Verdict.out)
+    assert (speed(least_rpm, more), speed(round(least_rpm * 1.06), more)) == (Verdict.out, Verdict.in_)
 
 
 @pytest.mark.parametrize(

@@ -67,3 +67,38 @@ async def test_all_that_asks_for_work_by_one_key(record: Record, tag: str) -> No
     again = records.open(record.path)
     assert [entry.line.action for entry in plans.listing(again, tag)] == ["turn-last-cut"]
     again.close()
+
+
+@pytest.mark.parametrize(
+    ("diameter", "action", "size"), [("42.62", "replace", "42.48"), ("42.64", "turn-last-cut", "42.5")]
+)
+async def test_undersize_is_called_before_any_cut(
+    record: Record, tmp_path: Path, diameter: str, action: str, size: str
+) -> None:
+    """Replace, and 0.02 mm larger the last cut; the size is called a prediction on the screen."""
+    small.fill(record, tmp_path)
+    shop.put(record, "polish", "0.02 mm")
+    tag = small.core(record).tag
+    readings.add_all(record, tag, [Entry("commutator-diameter", diameter)] * 4)
+    readings.add(record, tag, "as-found", "commutator-runout", "0.12")
+    record.close()
+    async with opened(record.path, (100, 30)) as pilot:
+        pilot.app.go("job", tag)
+        await settled(pilot)
+        await pilot.press("f5")
+        await until(pilot, lambda: action in text_of(pilot))
+        shown = " ".join(text_of(pilot).split())
+        assert "sizes are predictions" in shown
+        assert f"predicted, not measured: commutator-diameter {size} mm" in shown
+
+
+async def test_a_runout_larger_than_the_diameter_is_one_line_on_the_screen(record: Record, tag: str) -> None:
+    """The plan cannot be; the line above the keys says why."""
+    again = records.open(record.path)
+    readings.add(again, tag, "as-found", "commutator-runout", "60", why="typed so")
+    again.close()
+    async with opened(record.path, (120, 30)) as pilot:
+        pilot.app.go("job", tag)
+        await settled(pilot)
+        await pilot.press("f5")
+        await until(pilot, lambda: "is one of them a slip?" in text_of(pilot))

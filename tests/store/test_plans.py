@@ -53,19 +53,33 @@ def actions(record: Record, tag: str) -> list[tuple[str, str]]:
     return [(line.component, line.action) for line in plans.compute(record, tag).lines]
 
 
-def test_undersize_after_turning_is_called_before_any_cut(record: Record, tmp_path: Path) -> None:
-    """Cleaned up it would be 42.48, under 42.5: replace, on the command, in JSON and in the PDF."""
-    tag = core(record, tmp_path, "42.62")
-    assert actions(record, tag) == [("commutator", "replace")]
+@pytest.mark.parametrize(
+    ("diameter", "action", "size", "said"),
+    [
+        ("42.62", "replace", "42.48", "under the limit of 42.5: do not turn it"),
+        ("42.64", "turn-last-cut", "42.5", "another cut of this size would pass the limit of 42.5"),
+    ],
+)
+def test_undersize_is_called_before_any_cut_and_002_larger_is_the_last(
+    record: Record, tmp_path: Path, diameter: str, action: str, size: str, said: str
+) -> None:
+    """Cleaned up it would be 42.48, under 42.5: replace. 0.02 larger: turn, last cut. On the command, in JSON and the PDF."""
+    tag = core(record, tmp_path, diameter)
+    assert actions(record, tag) == [("commutator", action)]
     from tui.commands import cli
 
     done = CliRunner().invoke(cli, ["plan", tag, "--json", "--record", str(record.path)], catch_exceptions=False)
     (line,) = json.loads(done.output)["lines"]
-    assert (line["action"], line["predicted"]) == ("replace", {"commutator-diameter": {"value": "42.48", "unit": "mm"}})
-    text = " ".join(
-        "".join(p.extract_text() for p in pypdf.PdfReader(BytesIO(pdf.draw(gather.draft(record, tag)))).pages).split()
-    )
-    assert "under the limit of 42.5: do not turn it" in text
+    assert (line["action"], line["predicted"]["commutator-diameter"]) == (action, {"value": size, "unit": "mm"})
+    told = CliRunner().invoke(cli, ["plan", tag, "--record", str(record.path)], catch_exceptions=False).output
+    assert f"commutator: {action}." in told
+    assert f"predicted, not measured: commutator-diameter {size} mm" in told
+    pages = pypdf.PdfReader(BytesIO(pdf.draw(gather.draft(record, tag)))).pages
+    text = " ".join("".join(p.extract_text() for p in pages).split())
+    assert said in text
+    assert f"predicted: commutator-diameter {size} mm" in text
+    (kept,) = gather.draft(record, tag).plan
+    assert (kept.action, kept.outcome, kept.note) == (action, "open", "proposed, not accepted")
 
 
 def test_two_hundredths_larger_is_the_last_cut(record: Record, tmp_path: Path) -> None:
