@@ -13,7 +13,7 @@ from typing import Any
 
 from sqlalchemy import Connection
 
-from store import jobs, models, people, plan_bearings, plan_lines, plan_remarks, sheets
+from store import gauge_fit, jobs, models, people, plan_bearings, plan_lines, plan_remarks, sheets
 from store.errors import Refused
 from store.jobs import Job
 from store.plan_line import PlanLine, Predicted, shown
@@ -76,7 +76,9 @@ def compute(record: Record, tag: str, conn: Connection | None = None) -> Plan:
     model = models.by_id(conn, job.model_id)
     found = sheets.sheet(record, job.tag, "as-found", conn)
     lines = plan_lines.of_sheet(record, conn, job, model, found)
-    return Plan(job.tag, tuple(lines), tuple(plan_remarks.of_sheet(found, model.bars, model.poles)))
+    remarks = [*plan_remarks.of_sheet(found, model.bars, model.poles)]
+    remarks += [f"{row.characteristic.label}: {one}" for row in found.rows for one in gauge_fit.said(record, conn, row)]
+    return Plan(job.tag, tuple(lines), tuple(remarks))
 
 
 def accept(record: Record, tag: str, numbers: Sequence[int] | None = None) -> tuple[ReworkLine, ...]:

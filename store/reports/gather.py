@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from fractions import Fraction
 from math import sqrt
 
 from sqlalchemy import Connection
 
-from store import gauges, jobs, limit_sheets, models, plans, readings, sheets, shop, strip_chart, verdicts
+from store import gauge_fit, gauges, jobs, limit_sheets, models, plans, readings, sheets, shop, strip_chart, verdicts
 from store.catalogue import Catalogue, catalogue
 from store.errors import Refused
 from store.jobs import Job
@@ -56,6 +56,11 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
     sheet = None if job.revision_id is None else limit_sheets.by_revision(record, conn, job.revision_id)
     moments = sorted(r.at for r in taken)
     unit = _unit(conn, job)
+
+    def remarks(row: SheetRow) -> tuple[str, ...]:
+        said = strip_chart.said(row, unit.bars, unit.poles)
+        return (*filter(None, (said,)), *gauge_fit.said(record, conn, row))
+
     return contents.Report(
         number="",
         issued=_last_change(conn, job, moments),
@@ -77,7 +82,7 @@ def gather(record: Record, conn: Connection, tag: str) -> contents.Report:
         decision=None
         if sheet is None
         else contents.Decision(sheet.revision.decision.value, RULES[sheet.revision.decision]),
-        characteristics=tuple(_characteristics(catalogue(record, conn), job, unit, ever, found, left)),
+        characteristics=tuple(_characteristics(catalogue(record, conn), job, ever, found, left, remarks)),
         findings=_findings(conn, job),
         concessions=_concessions(conn, job, names),
         plan=_plan(record, conn, job),
@@ -173,7 +178,12 @@ def _gauges(record: Record, conn: Connection, taken: Iterable[Reading]) -> tuple
 
 
 def _characteristics(
-    known: Catalogue, job: Job, unit_of: contents.Unit, ever: dict[int, Reading], found: Sheet, left: Sheet
+    known: Catalogue,
+    job: Job,
+    ever: dict[int, Reading],
+    found: Sheet,
+    left: Sheet,
+    remarks: Callable[[SheetRow], tuple[str, ...]],
 ) -> Iterable[contents.Characteristic]:
     by_stage = {sheet.stage: {row.characteristic.name: row for row in sheet.rows} for sheet in (found, left)}
     order = {row.characteristic.name: row for sheet in (left, found) for row in sheet.rows}
@@ -181,7 +191,7 @@ def _characteristics(
     for name in sorted(order, key=place.__getitem__):
         one = order[name].characteristic
         results = tuple(
-            _result(job, unit_of, stage, row, ever)
+            _result(job, stage, row, ever, remarks(row))
             for stage, sheet in by_stage.items()
             if (row := sheet.get(name)) is not None and row.is_expected
         )
@@ -192,7 +202,7 @@ def _characteristics(
             )  # fmt: skip
 
 
-def _result(job: Job, unit_of: contents.Unit, stage: str, row: SheetRow, ever: dict[int, Reading]) -> contents.Result:
+def _result(job: Job, stage: str, row: SheetRow, ever: dict[int, Reading], remarks: tuple[str, ...]) -> contents.Result:
     said = verdicts.of_row(row)
     judgement = row.judged.judgement if row.judged else None
     limit = row.limit
@@ -221,7 +231,7 @@ def _result(job: Job, unit_of: contents.Unit, stage: str, row: SheetRow, ever: d
         limit=None if limit is None else _limit(job, row),
         readings=tuple(_reading(r, unit, exact, ever) for r in row.readings if r is not None),
         wear_rule=_wear_rule(row, exact),
-        remarks=tuple(filter(None, (strip_chart.said(row, unit_of.bars, unit_of.poles),))),
+        remarks=remarks,
     )
 
 

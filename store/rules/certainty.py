@@ -53,6 +53,24 @@ def of_reading(known: Certainty, unit: str) -> tuple[Fraction | None, Fraction |
     return found * by**2, (known.expanded or Fraction(0)) * by
 
 
+FINEST, LEAST_RATIO = 10, 4
+"""A resolution to a tenth of the tolerance, and a tolerance of four times 2 U: common practice, warned of, never a verdict."""
+
+
+def coarse(known: Certainty, tolerance: Fraction, unit: str) -> str:
+    """Why a gauge is coarse for a tolerance in `unit`, in words; "" where it is not or nothing of the kind is known."""
+    if tolerance <= 0 or not known.unit or quantities.unit(known.unit).quantity is not quantities.unit(unit).quantity:
+        return ""
+    by, said = quantities.scale(known.unit, unit), []
+    of = f"the tolerance of {quantities.plain(tolerance)} {unit}"
+    if known.resolution is not None and known.resolution * by * FINEST > tolerance:
+        said.append(f"its resolution of {quantities.plain(known.resolution * by)} {unit} is over a tenth of {of}")
+    if known.expanded and tolerance < LEAST_RATIO * 2 * known.expanded * by:
+        ratio = quantities.rounded(tolerance / (2 * known.expanded * by), 1)
+        said.append(f"{of} is {ratio} times 2 U, under {LEAST_RATIO}")
+    return "; ".join(said)
+
+
 def combine(variances: Iterable[Fraction | None]) -> Fraction | None:
     """The variance of a sum or difference of independent readings; None where one of them is not known (GUM 5.1.2)."""
     total = Fraction(0)

@@ -207,6 +207,14 @@ def margin(value: Fraction, limit: Limit) -> Fraction:
     return min(ends)
 
 
+def tolerance(limit: Limit) -> Fraction | None:
+    """From end to end of a two-sided limit, from new size to the limit of a one-sided one; None without either."""
+    if limit.low is not None and limit.high is not None:
+        return limit.high - limit.low
+    end = limit.low if limit.high is None else limit.high
+    return None if end is None or limit.new is None else abs(limit.new - end)
+
+
 def wear_used(value: Fraction, limit: Limit) -> float | None:
     """(new - y)/(new - limit) on the side on which the size wears; None without a new size or at a limit of it."""
     return _Scaled(value, limit).wear_used()
