@@ -23,12 +23,15 @@ MILLION = 1_000_000
 
 
 def of_sheet(record: Record, conn: Connection, job: Job, model: Model, found: Sheet) -> Iterator[PlanLine]:
-    """The lines of a plan in the order of the work. Raises Refused (sizes that cannot be)."""
+    """The lines of a plan in the order of the work: a dead winding comes before any turning. Raises Refused (sizes that cannot be)."""
     turned = list(_rotating(conn, job, model, found))
+    rest = list(_rest(found, model, {line.action for line in turned}))
+    dead = [line for line in rest if line.component in {"armature", "rotor"} and line.action == _joined(_REWIND)]
+    yield from dead
     yield from turned
     yield from plan_brushes.of_sheet(record, conn, job, found)
     yield from plan_bearings.of_sheet(conn, model, found)
-    yield from _rest(found, model, {line.action for line in turned})
+    yield from (line for line in rest if line not in dead)
 
 
 class _Names:
@@ -173,7 +176,11 @@ def _rest(found: Sheet, model: Model, planned: Iterable[str]) -> Iterator[PlanLi
             action = action if model.may_undercut else "replace"
         said, label = row.judged.because, row.characteristic.label
         said = said if said.startswith(label) else f"{label}: {said}"
-        yield PlanLine(row.characteristic.component, action.replace(",", "").replace(" ", "-"), said)
+        yield PlanLine(row.characteristic.component, _joined(action), said)
+
+
+def _joined(action: str) -> str:
+    return action.replace(",", "").replace(" ", "-")
 
 
 def _action(row: SheetRow) -> str:

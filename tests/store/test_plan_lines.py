@@ -210,3 +210,11 @@ def test_no_life_where_none_can_be_reckoned(record: Record, tmp_path: Path) -> N
     said = life(record, tmp_path, hours="400")
     assert "no life can be reckoned by hours: the later reading has no more hours or starts" in said
     assert "starts away" not in said
+
+
+def test_a_dead_winding_comes_before_any_turning(record: Record, tmp_path: Path) -> None:
+    """Nothing is turned on an armature that is to be rewound or replaced: that line stands first."""
+    tag = out(record, tmp_path, "KS-100", "armature-ground", "fail")
+    readings.add_all(record, tag, [Entry("commutator-diameter", "44")] * 4)
+    readings.add(record, tag, "as-found", "commutator-runout", "0.12")
+    assert [line.action for line in plans.compute(record, tag).lines] == ["rewind-or-replace", "turn"]
