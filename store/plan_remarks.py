@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Iterator
 from fractions import Fraction
 
-from store import strip_chart
+from store import plan_brushes, strip_chart
 from store.errors import Refused
-from store.rules import brushes, commutator, insulation, iso_fits, quantities, running
+from store.rules import commutator, insulation, iso_fits, quantities, running
 from store.rules.limits import Verdict
 from store.rules.quantities import Quantity
 from store.sheets import Sheet
@@ -21,7 +21,7 @@ def of_sheet(sheet: Sheet, model_bars: int | None, poles: int | None) -> Iterato
     for made in (
         _dial,
         _to_measure,
-        _springs,
+        plan_brushes.springs,
         _no_load,
         _stall,
         _loaded,
@@ -88,39 +88,6 @@ def _to_measure(sheet: Sheet) -> Iterator[str]:
         is_unknown = depth is None or depth.size("mm") is None
         if surface is not None and surface.verdict is Verdict.out and is_unknown:
             yield "the depth of the surface defect is not measured: a cut goes below it, so measure it first"
-
-
-def _springs(sheet: Sheet) -> Iterator[str]:
-    """The force of each spring at the stated position, from where it was read; a prediction, which no verdict takes up.
-
-    The stated position is the new size of the limit of `brush-spring-position`, where the manual's force holds; the
-    position where it was read and the force lost a millimetre are readings.
-    """
-    position, force = sheet.find("brush-spring-position"), sheet.find("brush-spring-force")
-    lost = sheet.size("brush-spring-loss", "N")
-    if position is None or force is None or lost is None:
-        return
-    stated, read_at = position.end("new", "mm"), position.sizes("mm")
-    if stated is None:
-        yield "no position is stated at which the springs' force holds: the new size of the limit of brush-spring-position"
-        return
-    least, most = force.end("low", "N"), force.end("high", "N")
-    for at, newton in force.sizes("N").items():
-        where = read_at.get(at, next(iter(read_at.values())) if len(read_at) == 1 else None)
-        if where is None:
-            continue
-        try:
-            made = brushes.force_at(newton, where, stated, lost)
-        except Refused as fault:
-            yield f"spring {at} at {_n(stated)} mm: {fault}"
-            continue
-        against = (
-            f", {_n(least)} N at least" if least is not None else f", {_n(most)} N at most" if most is not None else ""
-        )
-        yield (
-            f"spring {at} at the stated {_n(stated)} mm, predicted, not measured: F - (L - L') x s = {_n(newton)} - "
-            f"({_n(where)} - {_n(stated)}) x {_n(lost)} = {quantities.rounded(made, 2)} N{against}"
-        )
 
 
 def _no_load(sheet: Sheet) -> Iterator[str]:

@@ -12,7 +12,7 @@ from dataclasses import replace
 from fractions import Fraction
 
 from store.rules import quantities, running
-from store.rules.limits import Judgement, Limit, Measured, Verdict, judge
+from store.rules.limits import Judgement, Limit, Measured, Verdict, judge, stated
 from store.rules.running import Comparable
 from store.rules.statistic import Statistic
 
@@ -24,12 +24,8 @@ _CORRECTED = frozenset({"no-load-speed"})
 
 def specified(limit: Limit | None) -> Fraction | None:
     """The volts at which a test is specified, by the limit of its voltage; None where there is none."""
-    if limit is None:
-        return None
-    if limit.new is not None:
-        return quantities.convert(limit.new, limit.unit, "V")
-    ends = [quantities.convert(end, limit.unit, "V") for end in (limit.low, limit.high) if end is not None]
-    return sum(ends, Fraction(0)) / len(ends) if ends else None
+    volts = None if limit is None else stated(limit)
+    return None if limit is None or volts is None else quantities.convert(volts, limit.unit, "V")
 
 
 def judge_at(

@@ -215,6 +215,14 @@ def tolerance(limit: Limit) -> Fraction | None:
     return None if end is None or limit.new is None else abs(limit.new - end)
 
 
+def stated(limit: Limit) -> Fraction | None:
+    """The size at which something is specified, in the limit's unit: its new size, else the middle of its ends, else the end."""
+    if limit.new is not None:
+        return limit.new
+    ends = [end for end in (limit.low, limit.high) if end is not None]
+    return sum(ends, Fraction(0)) / len(ends) if ends else None
+
+
 def wear_used(value: Fraction, limit: Limit) -> float | None:
     """(new - y)/(new - limit) on the side on which the size wears; None without a new size or at a limit of it."""
     return _Scaled(value, limit).wear_used()

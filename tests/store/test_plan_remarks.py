@@ -151,6 +151,22 @@ def test_springs_read_each_at_its_own_position(record: Record, tag: str) -> None
     assert "spring 2 at 14 mm: at that position the spring would not reach the brush" in remarks(record, tag)
 
 
+def test_a_position_stated_by_its_ends(record: Record, tmp_path: Path) -> None:
+    """Without a new size the middle of the ends is stated; a position outside of them is no work."""
+    small.fill(record, tmp_path)
+    (tmp_path / "ends.csv").write_text(
+        "model,characteristic,stage,unit,low,high,source\nKS-100,brush-spring-position,both,mm,13,15,own\n"
+    )
+    files.load(record, [tmp_path / "ends.csv"])
+    tag = small.core(record).tag
+    said = remarks(record, tag, brush_spring_force="9", brush_spring_position="12", brush_spring_loss="0.5")
+    assert (
+        "spring 1 at the stated 14 mm, predicted, not measured: F - (L - L') x s = 9 - (12 - 14) x 0.5 = 10.00 N"
+        in said
+    )
+    assert plans.compute(record, tag).lines == ()
+
+
 def test_a_position_must_be_stated(record: Record, tmp_path: Path) -> None:
     """Without a limit that states the position the plan says where to enter it."""
     small.fill(record, tmp_path)
