@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import shutil
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
@@ -12,6 +13,9 @@ import pytest
 
 from store import records
 from store.records import Record
+
+for _said in ("WEARLINE_AS", "WEARLINE_RECORD"):  # whoever runs the tests may have a shop of their own
+    os.environ.pop(_said, None)
 
 START = datetime(2026, 11, 2, 8, 0, 0, tzinfo=UTC)
 

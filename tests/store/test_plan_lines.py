@@ -8,8 +8,10 @@ from pathlib import Path
 import pytest
 
 from store import files, plans, readings
+from store.errors import Refused
 from store.readings import Entry
 from store.records import Record
+from store.rules.statistic import Statistic
 from tests import shop as small
 
 FILES = {
@@ -218,3 +220,24 @@ def test_a_dead_winding_comes_before_any_turning(record: Record, tmp_path: Path)
     readings.add_all(record, tag, [Entry("commutator-diameter", "44")] * 4)
     readings.add(record, tag, "as-found", "commutator-runout", "0.12")
     assert [line.action for line in plans.compute(record, tag).lines] == ["rewind-or-replace", "turn"]
+
+
+def test_an_alternator_is_never_offered_a_commutators_work(record: Record, tmp_path: Path) -> None:
+    """Every test that it has fails, its rings run out and its shaft is bent or not: no undercut, growler or commutator."""
+    from store.catalogue import catalogue
+
+    small.fill(record, tmp_path)
+    tag = small.core(record, "9", "KA-300").tag
+    own = [c for c in catalogue(record).of("alternator") if not c.derive and "as-found" in c.stages]
+    tests = [Entry(c.name, "fail") for c in own if c.statistic is Statistic.attribute]
+    readings.add_all(record, tag, tests)
+    for name in ("slip-ring-diameter", "slip-ring-runout", "rotor-runout", "shaft-runout", "slip-ring-defect-depth"):
+        readings.add(record, tag, "as-found", name, "20" if name == "slip-ring-diameter" else "0.1")
+    plan = plans.compute(record, tag)
+    said = " ".join([*(f"{p.component} {p.action} {p.because} {p.formula}" for p in plan.lines), *plan.remarks])
+    assert len(plan.lines) > len(tests) / 2
+    for word in ("commutator", "undercut", "growler"):
+        assert word not in said
+    for name in ("undercut-depth", "growler-short", "commutator-diameter"):
+        with pytest.raises(Refused, match=f"{name} is not measured on an alternator"):
+            readings.add(record, tag, "as-found", name, "1" if name != "growler-short" else "pass")
