@@ -21,6 +21,7 @@ FIELDS = (
     ("application", "application", "what it works on"),
     ("complaint", "complaint", "in the customer's words"),
     ("hours", "hours run", "where known"),
+    ("starts", "starts made", "where known"),
     ("tag", "tag", "empty: the next number"),
 )
 
@@ -148,7 +149,7 @@ class TakeIn(Standing):
             return jobs.take_in(
                 self.record, model=values["model"], serial=values["serial"], tag=values["tag"] or None,
                 customer=values["customer"], application=values["application"], complaint=values["complaint"],
-                hours=values["hours"] or None,
+                hours=values["hours"] or None, starts=values["starts"] or None,
             ).tag  # fmt: skip
 
         self.ask("take", question, self.taken)
