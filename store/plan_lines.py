@@ -13,10 +13,10 @@ from store.jobs import Job
 from store.models import Model
 from store.plan_line import PlanLine, Predicted, shown
 from store.records import Record
-from store.rules import commutator, quantities
-from store.rules.commutator import Action
+from store.rules import commutator, quantities, turning
 from store.rules.limits import Verdict
 from store.rules.statistic import median
+from store.rules.turning import Action
 from store.sheets import Sheet, SheetRow
 
 MILLION = 1_000_000
@@ -58,7 +58,7 @@ def _rotating(conn: Connection, job: Job, model: Model, found: Sheet) -> Iterato
     """The commutator, or on an alternator its slip rings; never undercut or turning of a commutator there."""
     names = _Names(model.kind)
     measured = _measured(conn, model, found, names)
-    for advice in commutator.advise(measured):
+    for advice in turning.advise(measured):
         predicted = tuple(
             Predicted(names.diameter if name == "commutator-diameter" else name, value, measured.unit)
             for name, value in advice.predicted
@@ -67,7 +67,7 @@ def _rotating(conn: Connection, job: Job, model: Model, found: Sheet) -> Iterato
         yield PlanLine(names.part, advice.action.value, because, advice.formula, predicted)
 
 
-def _measured(conn: Connection, model: Model, found: Sheet, names: _Names) -> commutator.Found:
+def _measured(conn: Connection, model: Model, found: Sheet, names: _Names) -> turning.Found:
     """What of the sheet decides about a cut, in the unit of the diameter."""
     diameter, runout, undercut = (found.find(name) for name in (names.diameter, names.runout, names.undercut))
     surface, shaft = found.find(names.surface), _shaft(found, names)
@@ -79,7 +79,7 @@ def _measured(conn: Connection, model: Model, found: Sheet, names: _Names) -> co
     def end(row: SheetRow | None, which: str) -> Fraction | None:
         return None if row is None else row.end(which, unit)
 
-    return commutator.Found(
+    return turning.Found(
         unit=unit,
         diameter=size(diameter),
         runout=size(runout),
@@ -127,7 +127,7 @@ def _equal_passes(row: SheetRow | None) -> bool:
     return row is None or row.limit is None or row.limit.at_limit == "pass"
 
 
-def _at_our_rate(conn: Connection, job: Job, name: str, found: commutator.Found, advice: commutator.Advice) -> str:
+def _at_our_rate(conn: Connection, job: Job, name: str, found: turning.Found, advice: turning.Advice) -> str:
     """How many more cuts remain at the rate at which this shop cuts this model; nothing without an earlier cut."""
     turned = dict(advice.predicted).get("commutator-diameter")
     if turned is None or found.lowest is None or advice.action not in {Action.turn, Action.turn_last_cut}:

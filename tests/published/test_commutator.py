@@ -10,9 +10,9 @@ import pytest
 
 from store.errors import Refused
 from store.rules import commutator
-from store.rules.commutator import Action, Found, advise
 from store.rules.quantities import Quantity
 from store.rules.readings import parse
+from store.rules.turning import Action, Found, advise
 
 F = Fraction
 POINTS = 3600

@@ -9,7 +9,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from store.rules.commutator import Action, Found, advise, cuts_left
+from store.rules.commutator import cuts_left
+from store.rules.turning import Action, Found, advise
 
 F = Fraction
 TURNED = Found(
