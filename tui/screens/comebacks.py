@@ -53,7 +53,7 @@ class Comebacks(Standing):
                 Column("", 18),
                 Column("released", 8, right=True),
                 Column("back", 5, right=True),
-                Column("a year", 9, right=True),
+                Column("a year", 10, right=True),
                 Column("", 0),
             ],
             empty="nothing was released in this period",

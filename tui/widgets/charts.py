@@ -52,7 +52,14 @@ def curve_chart(
 
 def _row(top: float, height: int) -> float:
     """The share from one row to the next, a round one, so that the highest finds room; a row stands for what is nearest."""
-    return next((share for share in (0.005, 0.01, 0.02, 0.05, 0.1, 0.2, 0.5) if share * height >= min(1.0, top)), 1.0)
+    return next(
+        (
+            share
+            for share in (0.005, 0.01, 0.02, 0.03, 0.04, 0.05, 0.1, 0.15, 0.2, 0.25, 0.5)
+            if share * height >= min(1.0, top)
+        ),
+        1.0,
+    )
 
 
 def _at(steps: Sequence[Point], day: float) -> tuple[float, float, float]:
