@@ -56,6 +56,23 @@ async def test_the_first_person(record: Record) -> None:
         assert [p.name for p in people.listing(pilot.app.record)] == ["Ada Birch"]
 
 
+async def test_an_empty_bench_says_the_next_step(record: Record) -> None:
+    """First the person; who works here being said, the core; a search that finds nothing names the way out of it."""
+    record.close()
+    async with opened(record.path) as pilot:
+        await until(pilot, lambda: "F4 enters the first person" in text_of(pilot))
+        await keys(pilot, "f4", "f2")
+        await typed(pilot, "AB")
+        await keys(pilot, "enter")
+        await typed(pilot, "Ada Birch")
+        await keys(pilot, "ctrl+s", "enter")
+        await until(pilot, lambda: "no job here; F2 takes in a core" in text_of(pilot))
+        await typed(pilot, "12")
+        await until(pilot, lambda: "Esc empties the search" in text_of(pilot))
+        await keys(pilot, "escape")
+        await until(pilot, lambda: "no job here; F2 takes in a core" in text_of(pilot))
+
+
 async def test_keys_before_the_record_is_open(record: Record) -> None:
     """F2 works from the first frame on; what is typed there waits for the record."""
     record.close()

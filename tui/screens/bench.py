@@ -22,6 +22,10 @@ LOOK_AGAIN_SECONDS = 0.5
 MOST = 500
 ORDER = ("taken in", "stripped", "on rework", "to inspect", "released", "scrapped", "returned")
 
+NO_JOB = "no job here; F2 takes in a core, F7 looks in the notes"
+NOT_FOUND = "no such job; Esc empties the search, F2 takes in a core, F7 looks in notes"
+NOBODY = "nobody works here yet: F4 enters the first person, then F2 takes in a core"
+
 
 class Bench(Standing):
     """The start of everything."""
@@ -51,6 +55,7 @@ class Bench(Standing):
         self.version: Any = None
         self.shown_for: str | None = None
         self.opens_when_shown = False
+        self.has_nobody = False
 
     def body(self) -> ComposeResult:
         """Search, counts, list."""
@@ -62,7 +67,7 @@ class Bench(Standing):
                 Column("complaint", 0, quiet=True, from_width=100), Column("days", 4, right=True), Column("out", 3, right=True),
                 Column("doubt", 5, right=True),
             ],
-            empty="no job here; F2 takes in a core, F7 looks in the notes",
+            empty=NO_JOB,
             id="jobs",
             led=True,
         )  # fmt: skip
@@ -91,8 +96,21 @@ class Bench(Standing):
         return len(people.listing(self.record))
 
     def _must_say_who(self, people: int) -> None:
+        self.has_nobody = not people
+        self._say_next()
         if people and self.record is not None and self.record.by == "shop":
             self.action_who()
+
+    def _say_next(self) -> None:
+        """What an empty list tells to do: the first person first, the way out of a search that found nothing."""
+        listing = self.query_one("#jobs", Listing)
+        if self.query_one("#search", Input).value.strip():
+            listing.empty = NOT_FOUND
+        elif self.has_nobody and self.record is not None and self.record.by == "shop":
+            listing.empty = NOBODY
+        else:
+            listing.empty = NO_JOB
+        listing.refresh()
 
     def written(self, answers: Sequence[tuple[Order, Any]]) -> None:
         """A value that was refused after its job was left: said here, as there is no cell any more that could hold it."""
@@ -157,6 +175,7 @@ class Bench(Standing):
                     Item((f"{stands}  {len(here)}{'   ' + here[0].next if here[0].next else ''}",), heading=True)
                 )
                 items += [_item(line, now) for line in here]
+        self._say_next()
         listing = self.query_one("#jobs", Listing)
         listing.show(items)
         if self.opens_when_shown and self.shown_for == self.query_one("#search", Input).value:
