@@ -289,3 +289,40 @@ async def test_leaving_a_job_with_a_refused_value_is_said(path: Path) -> None:
         await keys(pilot, "escape")
         await until(pilot, lambda: "1001, brush-length 1,234" in text_of(pilot))
         assert text_of(pilot).startswith(" Wearline  Bench")
+
+
+async def test_line_feeds_end_values_and_follow_others_in_vain(path: Path) -> None:
+    """A gauge may end its values with LF, CR or CRLF: each value is in its own cell, none skipped."""
+    async with opened(path) as pilot:
+        await at_row(pilot, "brush-length")
+        for text, ends in (
+            ("11.4", ("ctrl+j",)),
+            ("11.2", ("enter", "ctrl+j")),
+            ("11.5", ("enter",)),
+            ("11.1", ("ctrl+j",)),
+        ):
+            await typed(pilot, text)
+            await keys(pilot, *ends)
+        await written(pilot)
+        found = readings.of_job(pilot.app.record, "1001")
+        assert [(r.position, r.typed.text) for r in found if r.characteristic == "brush-length"] == [
+            ("1", "11.4"), ("2", "11.2"), ("3", "11.5"), ("4", "11.1"),
+        ]  # fmt: skip
+
+
+async def test_from_the_sheet_to_what_stands_in_the_way(path: Path) -> None:
+    """F10 opens the release at the job that one came from."""
+    async with opened(path) as pilot:
+        await at_row(pilot, "brush-length")
+        await keys(pilot, "f10")
+        await until(pilot, lambda: "1001: " in text_of(pilot))
+        assert pilot.app.screen._line().tag == "1001"
+
+
+async def test_the_way_out_is_always_named(path: Path) -> None:
+    """At 80 columns not every key finds room; Esc and F1 do."""
+    async with opened(path) as pilot:
+        await at_row(pilot, "brush-length")
+        last = text_of(pilot).splitlines()[-1]
+        assert "Esc back" in last
+        assert "F1 all keys" in last

@@ -19,7 +19,7 @@ from tui.widgets.key_line import keys_of
 EVERYWHERE = (
     ("^p", "find any place or action by its name"),
     ("^t", "paper or graphite"),
-    ("^q", "leave; what was accepted is on disk already"),
+    ("^q", "leave; what was accepted is on disk already; ^ is the ctrl key, held down"),
 )
 GENERAL = (
     "Follow the maker's manual and local rules; have electrical work done by those licensed for it. Wearline never says that "

@@ -31,7 +31,7 @@ class Form(ModalScreen[Any]):
 
     CSS_PATH = "form.tcss"
     TITLE_WORDS = "Form"
-    EXPLAINS = "Enter goes to the next line, ctrl+s keeps, Esc leaves without keeping."
+    EXPLAINS = "Enter goes to the next line, ^s (ctrl and s) keeps, Esc leaves without keeping."
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("ctrl+s", "keep", "keep", priority=True),
         Binding("escape", "close", "back"),
@@ -51,7 +51,7 @@ class Form(ModalScreen[Any]):
                 yield Static(self.says, markup=False, classes="says")
             for line in self.lines:
                 yield Labelled(line.name, line.label, line.hint, line.value)
-            yield Static("Enter next   ctrl+s keep   Esc back", markup=False, classes="keys")
+            yield Static("Enter next   ^s keep   Esc back", markup=False, classes="keys")
             yield Static("", id="wrong", markup=False)
 
     def on_mount(self) -> None:

@@ -45,6 +45,7 @@ class JobScreen(Standing):
             for name, pane in PANES.items()
         ),
         Binding("f9", "report", "report", tooltip="the tolerance report as it will print"),
+        Binding("f10", "release", "release", tooltip="what stands in the way of this job's release, and the signature"),
         Binding("escape", "back", "back", tooltip="back to the sheet, then to the bench"),
     ]
 
@@ -134,6 +135,11 @@ class JobScreen(Standing):
         """The report as it will print."""
         self.sheet_pane.close_buffer()
         self.wearline.go("report", self.tag)
+
+    def action_release(self) -> None:
+        """What stands in the way of this job."""
+        self.sheet_pane.close_buffer()
+        self.wearline.go("release", self.tag)
 
     def action_back(self) -> None:
         """Back to the sheet, then to the bench; what is being typed is closed first."""

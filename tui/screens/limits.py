@@ -116,7 +116,7 @@ class Limits(Standing):
         said = f"{model.number}  {model.kind}{volts}  {model.rotation}"
         if self.sheet is not None:
             rev = self.sheet.revision
-            said += f"   revision {rev.number} of {known}, {rev.decision.value}, {rev.at[:10]} by {rev.by}  {rev.why}"
+            said += f"   revision {rev.number} of {known}, {rev.decision.value.replace('-', ' ')}, {rev.at[:10]} {rev.by}  {rev.why}"
         self.query_one("#revision", Static).update(said)
         listing = self.query_one("#sheet", Listing)
         if self.side_by_side and sheets:

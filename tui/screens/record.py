@@ -11,6 +11,7 @@ from textual.binding import Binding, BindingType
 from textual.containers import VerticalScroll
 from textual.widgets import Static
 
+from store.errors import brief
 from tui.screens.form import Form, Line
 from tui.screens.standing import Standing
 
@@ -70,7 +71,7 @@ class RecordPlace(Standing):
             text.append(f"{value}\n")
         text.append("\nlast changes\n", style="bold")
         for entry in newest:
-            text.append(f"{times.local(entry.at)}  {entry.by:<5} {entry.action}  {entry.subject[:60]}\n")
+            text.append(f"{times.local(entry.at)}  {entry.by:<5} {entry.action}  {brief(entry.subject, 60)}\n")
         self.query_one("#facts", Static).update(text)
 
     def _tell(self, what: str, done: int) -> None:

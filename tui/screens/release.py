@@ -37,12 +37,17 @@ class Release(Standing):
         Binding("escape", "back", "back"),
     ]
 
+    def __init__(self, tag: str = "") -> None:
+        """`tag`: the job to stand on."""
+        super().__init__()
+        self.wanted = tag
+
     def body(self) -> ComposeResult:
         """Jobs, then what stands in the way."""
         yield Listing(
             [
-                Column("tag", 8), Column("model", 12), Column("serial", 10), Column("customer", 0), Column("stands", 11),
-                Column("out", 3, right=True), Column("?", 2, right=True), Column("report", 10),
+                Column("tag", 8), Column("model", 12), Column("serial", 10), Column("customer", 0), Column("stands", 10),
+                Column("out", 3, right=True), Column("doubt", 5, right=True), Column("report", 9),
             ],
             empty="no job waits to be inspected",
             id="jobs",
@@ -90,7 +95,12 @@ class Release(Standing):
         items = [item(line, "" if line.stands == "to inspect" else "quiet") for line in waiting]
         if ended:
             items += [Item(("ended",), heading=True), *(item(line, "quiet") for line in ended)]
-        self.query_one("#jobs", Listing).show(items)
+        listing = self.query_one("#jobs", Listing)
+        listing.show(items)
+        tags = [getattr(item.value, "tag", "") for item in items]
+        if self.wanted in tags:
+            listing.move(tags.index(self.wanted) - listing.at)
+        self.wanted = ""
 
     def _line(self) -> Any:
         found = self.query_one("#jobs", Listing).item

@@ -32,7 +32,7 @@ class TakeIn(Standing):
     CSS_PATH = "take_in.tcss"
     TITLE_WORDS = "Bench > take in a core"
     EXPLAINS = (
-        "Enter goes to the next line; ctrl+s takes the core in from anywhere. Model and serial are needed, all else can wait. "
+        "Enter goes to the next line; ^s (ctrl and s) takes the core in from anywhere. Model and serial are needed, all else can wait. "
         "Any number that leads to a model will do. Earlier jobs of the same unit show below; a release makes this a comeback."
     )
     CAUTIONS = (

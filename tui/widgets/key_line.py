@@ -21,7 +21,7 @@ from textual.widget import Widget
 
 from tui.widgets.listing import flat
 
-EXPLAIN = "explain"
+EXPLAIN, LAST = "explain", ("Esc",)
 GAP = 2
 SECONDS, LONGEST, MOST_LINES = 12, 600, 4
 _KEYS = {"escape": "Esc", "delete": "Del", "enter": "Enter", "insert": "Ins", "pageup": "PgUp", "pagedown": "PgDn"}
@@ -91,15 +91,20 @@ class KeyLine(Widget):
             self.until = self.set_timer(SECONDS, lambda: self.say(""))
 
     def fitting(self, room: int) -> list[list[Key]]:
-        """Line by line the keys that find room, the one that explains last; where some do not, it promises them all."""
+        """Line by line the keys that find room, the way out and the one that explains last; the latter promises them all
+        where some find none.
+        """
         every = list(keys_of(self.screen))
-        first = [key for key in every if key.action != EXPLAIN]
-        last = [key for key in every if key.action == EXPLAIN]
+        last = sorted(
+            (key for key in every if key.key in LAST or key.action == EXPLAIN), key=lambda key: key.action == EXPLAIN
+        )
+        first = [key for key in every if key not in last]
         laid = _laid([*first, *last], room)
         if len(laid) > self.lines:
-            last = [replace(key, words="all keys") for key in last]
+            last = [replace(key, words="all keys") if key.action == EXPLAIN else key for key in last]
         while len(laid) > self.lines and first:
-            first.pop()
+            # The highest F keys lead to other places; a letter is an action of what stands in front.
+            first.pop(max((n for n, key in enumerate(first) if key.key[1:].isdigit()), default=-1))
             laid = _laid([*first, *last], room)
         return laid
 

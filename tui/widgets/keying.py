@@ -14,7 +14,8 @@ from enum import Enum
 ENTER, TAB, BACK_TAB, BACKSPACE, ESCAPE = "enter", "tab", "shift+tab", "backspace", "escape"
 ARROWS = {"up": (-1, 0), "down": (1, 0), "left": (0, -1), "right": (0, 1)}
 PAGES = {"pageup": -10, "pagedown": 10, "home": -100_000, "end": 100_000}
-KEYS = frozenset({ENTER, TAB, BACK_TAB, BACKSPACE, ESCAPE, *ARROWS, *PAGES})
+LINE_FEED = "ctrl+j"
+KEYS = frozenset({ENTER, LINE_FEED, TAB, BACK_TAB, BACKSPACE, ESCAPE, *ARROWS, *PAGES})
 QUICK = {"p": "pass", "f": "fail ", "c": "cannot judge "}
 LONGEST = 12_000
 Move = Callable[[], "tuple[int, int] | None"]
@@ -116,6 +117,9 @@ class Keying:
 
     def press(self, key: str) -> list[Submitted]:
         """Take a terminator or a moving key, one of KEYS."""
+        if key == LINE_FEED:
+            # Some gauges end a value so; after the CR of a CRLF there is nothing left to close.
+            return self.press(ENTER) if self.buffer else []
         self._touch()
         if key == BACKSPACE:
             self.buffer = self.buffer[:-1]
