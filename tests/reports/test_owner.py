@@ -99,7 +99,7 @@ def test_an_empty_record_gives_words(record: Record, paper: str) -> None:
     shop.put(record, "paper", paper)
     _, text = read(issue.draw(contents.gather(record)))
     assert "nothing was released in this period" in text
-    assert "No released unit of this period names its lot." in text
+    assert "No released unit of this period names its lot, part, supplier, model, assembler or finding." in text
     assert "No unit came back." in text
 
 

@@ -66,7 +66,13 @@ def _figures(found: Review) -> Iterator[str]:
         ]
     )
     for day, at in found.at.items():
-        yield f"  by {day} days: " + ("too young" if at is None else f"{at[0]:.1%} ({at[1]:.1%} to {at[2]:.1%})")
+        yield f"  by {day} days: {_share(at)}"
+
+
+def _share(at: tuple[float, float, float] | None) -> str:
+    if at is None:
+        return "too young"
+    return f"{at[0]:.1%} ({at[1]:.1%} to {at[2]:.1%})" if at[0] else "none until then"
 
 
 def _pareto(found: Review, *, jobs: bool) -> Iterator[str]:

@@ -15,7 +15,7 @@ from store.reports.pen import Pen, Seen
 from store.rules.recurrence import VARIANCE
 
 TITLE = "What comes back"
-MOST_GROUPS, MOST_FINDINGS, MOST_JOBS, MOST_FORETOLD, MOST_WORDS = 8, 12, 24, 12, 12
+MOST_GROUPS, MOST_RANKED, MOST_FINDINGS, MOST_JOBS, MOST_FORETOLD, MOST_WORDS = 8, 20, 12, 24, 12, 12
 _SOON = (
     "How soon: Kaplan and Meier's curve with log-log 95 % limits; units released lately count for as long as they were out. "
     "Below the curve stands how many were still followed."
@@ -55,7 +55,8 @@ def of(owner: Owner, seen: Seen) -> dict[str, Any]:
         "curve": charts.returns(found.curve, found.at_risk, found.longest),
         "by": [(f"by {by} days", _limits(at)) for by, at in found.at.items()],
         "pareto": _pareto(pen, owner),
-        "kinds": [_kind(pen, owner, kind) for kind in owner.kinds],
+        "kinds": [_kind(pen, owner, kind) for kind in owner.kinds if any(g.by == kind for g in found.groups)],
+        "nameless": _nameless(owner),
         "repeats": charts.repeats(found.repeat, found.longest),
         "repeats-says": _repeats(owner),
         "foretold": [
@@ -102,7 +103,9 @@ def _facts(owner: Owner) -> tuple[tuple[str, str], ...]:
 
 
 def _limits(at: tuple[float, float, float] | None) -> str:
-    return "too young" if at is None else f"{at[0]:.1%}  ({at[1]:.1%} to {at[2]:.1%})"
+    if at is None:
+        return "too young"
+    return f"{at[0]:.1%}  ({at[1]:.1%} to {at[2]:.1%})" if at[0] else "none until then"
 
 
 def _pareto(pen: Pen, owner: Owner) -> dict[str, Any]:
@@ -125,8 +128,9 @@ def _pareto(pen: Pen, owner: Owner) -> dict[str, Any]:
 def _kind(pen: Pen, owner: Owner, kind: str) -> dict[str, Any]:
     groups = [g for g in owner.review.groups if g.by == kind]
     ranked = [g for g in groups if g.p is not None]
-    shown = groups[: max(MOST_GROUPS, len(ranked))]
-    top, marks = charts.scale(max([g.high for g in shown if g.high is not None], default=0.1))
+    shown = groups[: max(MOST_GROUPS, min(MOST_RANKED, len(ranked)), sum(g.named for g in ranked))]
+    highs = [g.high for g in shown if g.high]
+    top, marks = charts.scale(max(highs)) if highs else (1.0, [])
     left = len(groups) - len(shown)
     return {
         "title": f"By {kind}",
@@ -136,11 +140,18 @@ def _kind(pen: Pen, owner: Owner, kind: str) -> dict[str, Any]:
     }
 
 
+def _nameless(owner: Owner) -> str:
+    """The kinds of which no released unit says anything."""
+    absent = [kind for kind in owner.kinds if not any(g.by == kind for g in owner.review.groups)]
+    if not absent:
+        return ""
+    *first, last = absent
+    return f"No released unit of this period names its {', '.join(first)}{' or ' if first else ''}{last}."
+
+
 def _seen(kind: str, groups: int, ranked: int, left: int) -> str:
     """How many groups of a kind there are, how many of them were ranked and how many are not shown."""
-    if not groups:
-        return f"No released unit of this period names its {kind}."
-    more = f" {left} more, with fewer comebacks, are not shown." if left else ""
+    more = f" {left} more, none of them named, are not shown." if left else ""
     return f"{groups} {kind}{'' if groups == 1 else 's'} seen, {ranked} with enough to be held against the rest.{more}"
 
 
