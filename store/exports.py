@@ -9,6 +9,7 @@ from store import files
 from store.errors import RecordUnusable
 from store.records import Record
 from store.sqlite.engine import rows
+from store.whole_files import write_whole
 
 
 def export(record: Record, folder: Path) -> dict[str, int]:
@@ -44,5 +45,5 @@ def _json(record: Record, path: Path) -> int:
             listed = ",".join(f'"{n}"' for n in names)
             whole[name] = [dict(zip(names, row, strict=True)) for row in rows(conn, f'SELECT {listed} FROM "{name}"')]  # noqa: S608
             count += len(whole[name])
-    files.write_whole(path, (json.dumps(whole, ensure_ascii=False, indent=1) + "\n").encode())
+    write_whole(path, (json.dumps(whole, ensure_ascii=False, indent=1) + "\n").encode())
     return count

@@ -10,18 +10,17 @@ from __future__ import annotations
 
 import csv
 import io
-import os
-import tempfile
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
 from store import people
-from store.errors import BadLine, FileRefused, NotFound, RecordUnusable
+from store.errors import BadLine, FileRefused, NotFound
 from store.files import reader
 from store.files.kinds import Kind, Loading, TooManyBadLines
 from store.nearest import nearest
 from store.records import Record
+from store.whole_files import write_whole
 
 
 @dataclass(frozen=True, slots=True)
@@ -182,22 +181,4 @@ def save(record: Record, name: str, path: Path) -> int:
     return lines
 
 
-def write_whole(path: Path, content: bytes) -> None:
-    """Write a file beside its place, sync it, and move it there, so that it is whole or not there. Raises RecordUnusable."""
-    try:
-        handle, half = tempfile.mkstemp(prefix=f".{path.name}.", dir=path.absolute().parent)
-        try:
-            with os.fdopen(handle, "wb") as out:
-                out.write(content)
-                out.flush()
-                os.fsync(out.fileno())
-            Path(half).chmod(0o644)
-            Path(half).replace(path)
-        except BaseException:
-            Path(half).unlink(missing_ok=True)
-            raise
-    except OSError as fault:
-        raise RecordUnusable(f"{path} cannot be written: {(fault.strerror or str(fault)).lower()}") from None
-
-
-__all__ = ["Loaded", "find", "kind_of", "kinds", "load", "save", "write_whole"]
+__all__ = ["Loaded", "find", "kind_of", "kinds", "load", "save"]

@@ -337,3 +337,7 @@ class Report:
         """Every characteristic that has a result at a stage, with it, in order."""
         found = ((one, one.at(stage)) for one in self.characteristics)
         return tuple((one, result) for one, result in found if result is not None)
+
+
+Frozen = tuple[Report, str | None]
+"""A report and the text that it was frozen as when it was issued; None for a draft."""

@@ -10,7 +10,7 @@ from concurrent.futures import Future, ThreadPoolExecutor
 from store.errors import Refused
 from store.reports import drawing
 from store.reports.canonical import to_json
-from store.reports.contents import LAYOUT, Report
+from store.reports.contents import LAYOUT, Frozen, Report
 from store.reports.typesetting import typeset
 
 ATTACHMENT = "wearline-report.json"
@@ -27,7 +27,7 @@ def draw(report: Report, contents: str | None = None) -> bytes:
     return typeset("report.typ", lambda seen: drawing.of(report, seen), attached, report.issued)
 
 
-def draw_many(reports: Iterable[Report]) -> Iterator[bytes]:
+def draw_many(reports: Iterable[Frozen]) -> Iterator[bytes]:
     """The reports as PDF bytes, in order, drawn on every core; no more are under way than the reader soon takes.
 
     Raises what `draw` raises, at the report that it concerns. Closing the iterator ends the work.
@@ -36,8 +36,8 @@ def draw_many(reports: Iterable[Report]) -> Iterator[bytes]:
     under_way: deque[Future[bytes]] = deque()
     with ThreadPoolExecutor(workers, thread_name_prefix="report") as pool:
         try:
-            for report in reports:
-                under_way.append(pool.submit(draw, report))
+            for report, frozen in reports:
+                under_way.append(pool.submit(draw, report, frozen))
                 if len(under_way) > workers:
                     yield under_way.popleft().result()
             while under_way:

@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from store.errors import Refused, brief
-from store.reports.contents import Report
+from store.reports.contents import Frozen
 from store.reports.saving import save_many
 
 WAIT_S = 60
@@ -71,7 +71,7 @@ def hand_over(file: Path, queue: str = "") -> HandedOver:
     return HandedOver(file, found[1] if found else queue, found[2] if found else "")
 
 
-def print_many(reports: Iterable[Report], folder: Path, queue: str = "") -> Iterator[HandedOver]:
+def print_many(reports: Iterable[Frozen], folder: Path, queue: str = "") -> Iterator[HandedOver]:
     """Save each report to `folder` and hand it over, yielding each as the queue takes it, in order.
 
     Raises NotPrinted at the first that no printer takes, Refused where one cannot be drawn or saved; those before it

@@ -51,11 +51,14 @@ def test_two_hundred_in_a_batch(demo_record_path: Path) -> None:
     """Gathered and drawn, at most 60 ms each on two cores of the quiet machine; the pace is taken on as many."""
     record = records.open(demo_record_path)
     tags = [line.tag for line in jobs.listing(record, outcome="released", most=200)]
-    next(iter(pdf.draw_many(iter([gather.draft(record, tags[0])]))))
+    next(iter(pdf.draw_many([(gather.draft(record, tags[0]), None)])))
     slow = pace(processes=2)
     begun = time.perf_counter()
     count = sum(
-        1 for _ in pdf.draw_many(gather.draft(record, tag) for tag in itertools.islice(itertools.cycle(tags), 200))
+        1
+        for _ in pdf.draw_many(
+            (gather.draft(record, tag), None) for tag in itertools.islice(itertools.cycle(tags), 200)
+        )
     )
     each = (time.perf_counter() - begun) / count
     slow = max(slow, pace(processes=2))

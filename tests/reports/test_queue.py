@@ -9,14 +9,18 @@ import time
 from collections.abc import Iterator
 from pathlib import Path
 
+import pypdf
 import pytest
+from click.testing import CliRunner
 
 from store import people, releases
 from store.errors import Refused
 from store.records import Record
-from store.reports import issue
+from store.reports import issue, saving
+from store.reports.printing import HandedOver
 from tests import shop as small
 from tests.store.test_releases import GOOD, measure
+from tui.commands import cli
 
 
 @pytest.fixture
@@ -82,8 +86,10 @@ def test_a_days_batch_goes_to_the_queue(record: Record, released: list[str], que
     """Each of the day's reports arrives at the printer as the bytes that were saved."""
     day = releases.on_day(record, record.now()[:10])
     assert [issued.tag for issued in day] == released
-    for issued in day:
-        assert "wearline-test" in issue.print_out(record, issued.tag, "wearline-test", tmp_path)
+    told: list[tuple[str, int]] = []
+    done = issue.print_day(record, record.now()[:10], "wearline-test", tmp_path, lambda *said: told.append(said))
+    assert [one.queue for one in done] == ["wearline-test"] * len(released)
+    assert told == [(f"printing, of {len(released)} reports", n) for n in range(1, len(released) + 1)]
     last = (tmp_path / f"{day[-1].number}.pdf").read_bytes()
     for _ in range(100):
         if queue.exists() and last in queue.read_bytes():
@@ -101,3 +107,35 @@ def test_without_a_printer_it_is_said_and_the_file_named(
         issue.print_out(record, released[0], folder=tmp_path)
     assert (tmp_path / "WL-000001.pdf").exists()
     assert str(tmp_path) in str(caught.value)
+
+
+def test_a_day_by_command(record: Record, released: list[str], tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """`report --day` prints what was issued on that day; another day has nothing, and a job's tag does not go with it."""
+    given: list[Path] = []
+    monkeypatch.setattr(
+        "store.reports.printing.hand_over", lambda file, queue: given.append(file) or HandedOver(file, queue, "7")
+    )
+    record_path, day = str(record.path), record.now()[:10]
+    numbers = [issued.number for issued in releases.on_day(record, day)]
+    record.close()
+    run = CliRunner()
+    said = run.invoke(cli, ["report", "--day", day, "--print", "bench", "--record", record_path])
+    assert said.exit_code == 0, said.output
+    assert [file.stem for file in given] == numbers
+    assert f"{len(released)} reports handed to the printer" in said.output
+    said = run.invoke(cli, ["report", "--day", "2001-01-01", "--print", "--record", record_path])
+    assert "no report was issued on 2001-01-01" in said.output
+    assert run.invoke(cli, ["report", "1001", "--day", day, "--print", "--record", record_path]).exit_code == 2
+
+
+def test_a_reprint_carries_the_text_that_was_frozen(record: Record, released: list[str], tmp_path: Path) -> None:
+    """What is saved or printed later attaches the frozen text itself, not one that is written anew."""
+    report, frozen = releases.standing(record, released[0])
+    assert frozen is not None
+    older = frozen.replace('"layout": 1', '"layout":  1')
+    assert older != frozen
+    made = saving.save(report, tmp_path / "a.pdf", older)
+    ((attached,),) = pypdf.PdfReader(made).attachments.values()
+    assert attached.decode() == older
+    assert saving.save(report, tmp_path / "a.json", older).read_text() == older
+    assert issue.save(record, released[0], tmp_path / "b.json").read_text() == frozen

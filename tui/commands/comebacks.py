@@ -87,9 +87,9 @@ class Asked(NamedTuple):
 
 def _save(record: Record, by: str | None, asked: Asked, path: Path) -> Path:
     """Write the owner's report or the figures, as the ending says."""
-    from store import files
     from store.errors import Refused, brief
     from store.reports.owner import issue
+    from store.whole_files import write_whole
     from tui.commands import comebacks_text
 
     ending = path.suffix.lower()
@@ -106,7 +106,7 @@ def _save(record: Record, by: str | None, asked: Asked, path: Path) -> Path:
         text = _csv(figures["groups"] or figures["curve"])
     else:
         raise Refused(f"{brief(path.name)!r}: a review is written as .pdf, .txt, .csv or .json")
-    files.write_whole(path, text.encode())
+    write_whole(path, text.encode())
     return path
 
 

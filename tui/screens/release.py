@@ -295,20 +295,18 @@ class Release(Standing):
         """Hand today's reports to the printer, one after the other."""
 
         def question() -> Any:
-            from store import releases
             from store.reports import issue
 
             assert self.record is not None
-            today = releases.on_day(self.record, self.record.now()[:10])
-            return [issue.print_out(self.record, issued.tag) for issued in today]
+            return issue.print_day(self.record, self.record.now()[:10], progress=self._tell)
 
-        self.ask(
-            "print",
-            question,
-            lambda said: self.notify(
-                f"{len(said)} reports handed to the printer" if said else "no report was issued today"
-            ),
-        )
+        def done(handed: Any) -> None:
+            self.notify(f"{len(handed)} reports handed to the printer" if handed else "no report was issued today")
+
+        self.ask("print", question, done)
+
+    def _tell(self, what: str, done: int) -> None:
+        self.app.call_from_thread(self.notify, f"{what}: {done}")
 
     def action_back(self) -> None:
         """From the lines to the jobs, then back."""

@@ -10,8 +10,8 @@ from store.reports import printing
 from store.reports.figures import day
 from store.reports.owner import drawing
 from store.reports.owner.contents import Owner, to_json
-from store.reports.saving import put
 from store.reports.typesetting import typeset
+from store.whole_files import write_whole
 
 ENDINGS = (".pdf", ".json")
 
@@ -23,7 +23,7 @@ def draw(owner: Owner) -> bytes:
 
 def save(owner: Owner, path: Path) -> Path:
     """Write it to a file, as its ending says. Raises Refused."""
-    put(named(path), draw(owner) if path.suffix.lower() == ".pdf" else to_json(owner).encode())
+    write_whole(named(path), draw(owner) if path.suffix.lower() == ".pdf" else to_json(owner).encode())
     return path
 
 
