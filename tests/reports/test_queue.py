@@ -112,9 +112,12 @@ def test_without_a_printer_it_is_said_and_the_file_named(
 def test_a_day_by_command(record: Record, released: list[str], tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     """`report --day` prints what was issued on that day; another day has nothing, and a job's tag does not go with it."""
     given: list[Path] = []
-    monkeypatch.setattr(
-        "store.reports.printing.hand_over", lambda file, queue: given.append(file) or HandedOver(file, queue, "7")
-    )
+
+    def handed(file: Path, queue: str) -> HandedOver:
+        given.append(file)
+        return HandedOver(file, queue, "7")
+
+    monkeypatch.setattr("store.reports.printing.hand_over", handed)
     record_path, day = str(record.path), record.now()[:10]
     numbers = [issued.number for issued in releases.on_day(record, day)]
     record.close()
