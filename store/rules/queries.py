@@ -23,6 +23,8 @@ _PART = re.compile(
     | (?P<word>[^\s"]+) )""",
     re.VERBOSE,
 )
+_FIGURE = re.compile(r"[+-]?\d*[.,]\d+[a-zA-Z%]{0,4}\Z")
+"""A size is no misspelt word: 12.34 is looked for as it is."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,7 +88,8 @@ def parse(text: str, *, typing: bool = False) -> Query:
             terms.append(Term(pieces[0], literal=True))
         else:
             last = typing and part.end() == len(cut) and len(text) == len(cut)
-            terms += [Term(word, unfinished=last) for word in ((whole,) if whole else pieces)]
+            figure = _FIGURE.match(said) is not None
+            terms += [Term(word, literal=figure, unfinished=last) for word in ((whole,) if whole else pieces)]
     kept = _unique(terms)
     left_out = ""
     if len(kept) > MOST_WORDS or len(text) > MOST_CHARACTERS:

@@ -59,3 +59,11 @@ def test_too_much() -> None:
     query = parse(" ".join(f"word{chr(97 + n % 26)}{chr(97 + n // 26)}" for n in range(600)))
     assert len(query.terms) == MOST_WORDS
     assert "only the first" in query.left_out
+
+
+@pytest.mark.parametrize(
+    ("typed", "literal"), [("12.34", True), ("0,05mm", True), ("12-34", False), ("1234", False), ("KM-12.5", False)]
+)
+def test_a_size_is_looked_for_as_it_is(typed: str, literal: bool) -> None:
+    """A figure with a decimal mark is not respelled; a part number may be."""
+    assert {term.literal for term in parse(typed).terms} == {literal}
