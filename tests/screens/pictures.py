@@ -8,10 +8,13 @@ import shutil
 import tempfile
 from pathlib import Path
 
+from textual.widgets import Input
+
 from store import demonstration, jobs, records
 from tests.screens.support import opened, settled
 from tui.widgets.sheet import ReadingSheet
 
+WORN_PLATE = "KS-?4?"
 FOLDER = Path(__file__).resolve().parents[2] / "tests" / "screens" / "pictures"
 
 
@@ -26,6 +29,8 @@ def wanted(path: Path) -> dict[str, tuple[str, ...]]:
         "plan": ("job", worn, "as-found", "", "plan"),
         "release": ("release",),
         "limits": ("limits",),
+        "parts": ("parts",),
+        "comebacks": ("comebacks",),
     }
 
 
@@ -47,9 +52,13 @@ async def draw() -> None:
                     row = next(n for n, face in enumerate(sheet.faces) if face.verdict == "out")
                     sheet.stand(row)
                     await settled(pilot)
+                if name == "parts":
+                    pilot.app.screen.query_one("#ask", Input).value = WORN_PLATE
+                    await settled(pilot)
                 picture = re.sub(
                     r"@font-face \{.*?\}", "", pilot.app.export_screenshot(title="Wearline"), flags=re.DOTALL
                 )
+                picture = picture.replace("<text ", '<text xml:space="preserve" ')  # columns stay where they are
                 (FOLDER / f"{name}.svg").write_text(picture, encoding="utf-8")  # no font from the network
 
 
