@@ -43,7 +43,7 @@ async def draw() -> None:
         for name, place in wanted(made).items():
             path = Path(folder) / f"{name}.wearline"
             shutil.copyfile(made, path)
-            async with opened(path, (112, 34), "ET") as pilot:
+            async with opened(path, (124, 34), "ET") as pilot:
                 if place:
                     pilot.app.go(*place)
                     await settled(pilot)

@@ -21,6 +21,7 @@ class JobScreen(Standing):
 
     CSS_PATH = "job.tcss"
     TITLE_WORDS = "Job"
+    KEY_LINES = 2
     EXPLAINS = (
         "Type a reading and press Enter: it goes into the cell under the cursor, is written to disk and judged, and the cursor "
         "goes to the next empty one. A gauge that types does the same. Write 11.4, 11,4, .448in, 7/16 or 1 3/16; tests are one "

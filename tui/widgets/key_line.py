@@ -103,8 +103,7 @@ class KeyLine(Widget):
         if len(laid) > self.lines:
             last = [replace(key, words="all keys") if key.action == EXPLAIN else key for key in last]
         while len(laid) > self.lines and first:
-            # The highest F keys lead to other places; a letter is an action of what stands in front.
-            first.pop(max((n for n, key in enumerate(first) if key.key[1:].isdigit()), default=-1))
+            first.pop(_spare(first))
             laid = _laid([*first, *last], room)
         return laid
 
@@ -141,6 +140,13 @@ def say(screens: Sequence[Screen[Any]], words: str, *, is_loud: bool) -> None:
         for line in screen.query(KeyLine):
             line.say(words, is_loud=is_loud)
             return
+
+
+def _spare(keys: list[Key]) -> int:
+    """Which key is missed least: one with ctrl, then the highest F key, which leads elsewhere; a letter acts on what is in front."""
+    ctrl = [n for n, key in enumerate(keys) if key.key.startswith("^")]
+    places = [n for n, key in enumerate(keys) if key.key[1:].isdigit()]
+    return (ctrl or places or [-1])[-1]
 
 
 def _length(key: Key) -> int:
