@@ -43,7 +43,7 @@ def check(record: Record, pin: str | None) -> None:
     if kept is None:
         return
     if not pin:
-        raise Refused(f"{record.by} signs with a PIN: --pin")
+        raise Refused(f"{record.by} signs with a PIN")
     from argon2 import PasswordHasher
     from argon2.exceptions import InvalidHashError, VerificationError
 

@@ -97,7 +97,7 @@ def standing(record: Record, tag: str) -> tuple[contents.Report, str | None]:
 def concede(record: Record, tag: str, characteristic: str, because: str) -> None:
     """Accept a stated departure, by name and with a reason. Raises NotFound, Refused (nothing to concede, no reason)."""
     if not because.strip():
-        raise Refused("a concession has a reason: --because WHY")
+        raise Refused("a concession has a reason")
     if len(because) > readings.MOST_NOTE:
         raise Refused(f"a reason has at most {readings.MOST_NOTE:,} characters")
     with record.change("concession given", tag) as change:

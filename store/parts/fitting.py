@@ -92,7 +92,7 @@ def fit(
             raise Refused(f"{job.tag} has ended; nothing can be fitted on it")
         crossed = _cross(record, change.conn, job, kept, maker.strip())
         if crossed.is_mismatch and not why.strip():
-            raise Refused(f"{kept} on {job.model}: {crossed.says}; to fit it all the same, say why (--because)")
+            raise Refused(f"{kept} on {job.model}: {crossed.says}; to fit it all the same, say why")
         values = {column: " ".join(text.split()) for column, text in texts.items()}
         which = change.insert(
             FittedRow, job_id=job.id, number=kept, key=rule.comparing_key(kept), quantity=quantity, by=record.by,

@@ -55,3 +55,13 @@ async def test_the_record_is_verified_on_screen(record: Record, tmp_path: Path) 
         await keys(pilot, "f2")
         await until(pilot, lambda: "verified: " in text_of(pilot))
         await settled(pilot)
+
+
+async def test_the_first_that_waits_is_under_the_cursor(demo: Record) -> None:
+    """Opened from the bench, the inspector stands on the first unit to inspect, not on one that has ended."""
+    path = demo.path
+    demo.close()
+    async with opened(path, acting="MW") as pilot:
+        pilot.app.go("release")
+        await until(pilot, lambda: pilot.app.screen._line() is not None)
+        assert pilot.app.screen._line().stands == "to inspect"

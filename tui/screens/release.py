@@ -98,7 +98,7 @@ class Release(Standing):
         listing = self.query_one("#jobs", Listing)
         listing.show(items)
         tags = [getattr(item.value, "tag", "") for item in items]
-        if self.wanted in tags:
+        if self.wanted and self.wanted in tags:
             listing.move(tags.index(self.wanted) - listing.at)
         self.wanted = ""
 
