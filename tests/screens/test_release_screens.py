@@ -63,5 +63,6 @@ async def test_the_first_that_waits_is_under_the_cursor(demo: Record) -> None:
     demo.close()
     async with opened(path, acting="MW") as pilot:
         pilot.app.go("release")
+        await settled(pilot)
         await until(pilot, lambda: pilot.app.screen._line() is not None)
         assert pilot.app.screen._line().stands == "to inspect"
