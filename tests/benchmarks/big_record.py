@@ -20,16 +20,18 @@ READ = (
     ("commutator-runout", 1, 0.005, 0.05),
     ("end-play", 1, 0.1, 0.3),
 )
+MORE = (*READ, ("brush-spring-force", 4, 12.0, 18.0), ("shaft-runout", 1, 0.005, 0.08))
+"""Fifteen a job and stage."""
 
 
-def make(path: Path, jobs: int, folder: Path) -> None:
-    """Ten readings a job and stage, judged; one audit entry."""
+def make(path: Path, jobs: int, folder: Path, read: tuple[tuple[str, int, float, float], ...] = READ) -> None:
+    """Ten readings a job and stage unless `read` says more, judged; one audit entry."""
     record = records.open(path, create=True)
     shop.fill(record, folder)
     draw = random.Random(jobs)
     with record.read() as conn:
         known = catalogue(record, conn)
-    ids = {name: known.by_name[name].id for name, *_ in READ}
+    ids = {name: known.by_name[name].id for name, *_ in read}
 
     def units() -> Iterator[tuple[Any, ...]]:
         for n in range(1, jobs + 1):
@@ -39,7 +41,7 @@ def make(path: Path, jobs: int, folder: Path) -> None:
         key = 0
         for job in range(1, jobs + 1):
             for stage in ("as-found", "as-left"):
-                for name, count, low, high in READ:
+                for name, count, low, high in read:
                     for place in range(count):
                         key += 1
                         text = f"{draw.uniform(low, high):.3f}"
@@ -47,7 +49,8 @@ def make(path: Path, jobs: int, folder: Path) -> None:
                             ("A0", "A90", "B0", "B90")[place] if name == "commutator-diameter" else str(place + 1)
                         )
                         value = f"{int(text.replace('.', ''))}/1000"
-                        said = (text, "number", value, "mm", 3, "", 1, "2026-01-02T08:00:00Z", "shop", "", None, "")
+                        unit = "N" if name == "brush-spring-force" else "mm"
+                        said = (text, "number", value, unit, 3, "", 1, "2026-01-02T08:00:00Z", "shop", "", None, "")
                         yield (key, job, stage, ids[name], position, *said)
 
     with record.change("made for measuring") as change:
